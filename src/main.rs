@@ -1,0 +1,4 @@
+//! The command line.
+#![forbid(unsafe_code)]
+
+fn main() {}
