@@ -178,7 +178,7 @@ impl Field {
     #[must_use]
     pub fn is_nonzero_square(&self, a: u16) -> bool {
         self.check(a);
-        a != 0 && (self.p == 2 || self.log[a as usize] % 2 == 0)
+        a != 0 && (self.p == 2 || self.log[a as usize].is_multiple_of(2))
     }
 
     /// The m coefficients of `a` over GF(p), constant term first.

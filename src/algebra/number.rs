@@ -12,7 +12,7 @@ pub fn factorise(n: u64) -> Vec<(u64, u32)> {
     let (mut rest, mut p) = (n, 2u64);
     while p.checked_mul(p).is_some_and(|square| square <= rest) {
         let mut e = 0;
-        while rest % p == 0 {
+        while rest.is_multiple_of(p) {
             rest /= p;
             e += 1;
         }
@@ -68,7 +68,7 @@ mod tests {
     #[test]
     fn against_the_plain_definitions() {
         for n in 1u64..2000 {
-            let plain: Vec<u64> = (1..=n).filter(|d| n % d == 0).collect();
+            let plain: Vec<u64> = (1..=n).filter(|&d| n.is_multiple_of(d)).collect();
             assert_eq!(divisors(n), plain);
             assert_eq!(factorise(n).iter().map(|&(p, e)| p.pow(e)).product::<u64>(), n);
             assert_eq!(is_prime(n as u32), plain.len() == 2);
