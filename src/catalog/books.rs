@@ -1,0 +1,190 @@
+//! Which Hadamard matrices and difference schemes can be had, and by which recipe.
+
+use std::collections::HashMap;
+use std::sync::{Arc, Mutex};
+
+use crate::algebra::{factorise, prime_power};
+use crate::recipe::{HadamardRecipe, SchemeRecipe, Shape};
+
+/// The largest order of a Hadamard matrix that is looked for.
+pub const MAX_ORDER: u32 = 65_536;
+
+/// Hadamard matrices by order.
+#[derive(Debug, Default)]
+pub struct HadamardBook {
+    seeds: HashMap<u32, Arc<HadamardRecipe>>,
+    memo: Mutex<HashMap<u32, Option<Arc<HadamardRecipe>>>>,
+}
+
+impl HadamardBook {
+    /// The book with the given stored matrices.
+    #[must_use]
+    pub fn new(seeds: impl IntoIterator<Item = HadamardRecipe>) -> Self {
+        let mut book = Self::default();
+        for seed in seeds {
+            if let Some(order) = seed.order() {
+                book.seeds.entry(order).or_insert_with(|| Arc::new(seed));
+            }
+        }
+        book
+    }
+
+    /// A Hadamard matrix of order `n`, if one is known here: Sylvester, then Paley I, Paley II,
+    /// stored ones, Kronecker products with the smallest left factor.
+    #[must_use]
+    pub fn get(&self, n: u32) -> Option<Arc<HadamardRecipe>> {
+        if n == 0 || n > MAX_ORDER || (n > 2 && !n.is_multiple_of(4)) {
+            return None;
+        }
+        if let Some(known) = lock(&self.memo).get(&n) {
+            return known.clone();
+        }
+        let found = self.find(n);
+        lock(&self.memo).insert(n, found.clone());
+        found
+    }
+
+    fn find(&self, n: u32) -> Option<Arc<HadamardRecipe>> {
+        if n.is_power_of_two() {
+            return Some(Arc::new(HadamardRecipe::Sylvester { k: n.trailing_zeros() }));
+        }
+        if prime_power(n - 1).is_some() {
+            return Some(Arc::new(HadamardRecipe::PaleyOne { q: n - 1 }));
+        }
+        let q = n / 2 - 1;
+        if q % 4 == 1 && prime_power(q).is_some() {
+            return Some(Arc::new(HadamardRecipe::PaleyTwo { q }));
+        }
+        if let Some(seed) = self.seeds.get(&n) {
+            return Some(Arc::clone(seed));
+        }
+        (2..).take_while(|a| a * a <= n).filter(|a| n.is_multiple_of(*a)).find_map(|a| {
+            let (left, right) = (self.get(a)?, self.get(n / a)?);
+            Some(Arc::new(HadamardRecipe::Kronecker { left, right }))
+        })
+    }
+}
+
+/// Difference schemes by number of rows and order of the group.
+#[derive(Debug, Default)]
+pub struct SchemeBook {
+    hadamard: Arc<HadamardBook>,
+    seeds: HashMap<(u32, u32), Arc<SchemeRecipe>>,
+    memo: Mutex<HashMap<(u32, u32), Option<Best>>>,
+}
+
+/// The scheme with the most columns that is known for its rows and order.
+#[derive(Clone, Debug)]
+pub struct Best {
+    /// The number of columns.
+    pub columns: u32,
+    /// How it is built.
+    pub recipe: Arc<SchemeRecipe>,
+}
+
+/// The cyclic factors of the group of order `s` that all schemes here are over: elementary
+/// abelian Sylow subgroups, primes ascending.
+#[must_use]
+pub fn standard_group(s: u32) -> Vec<u16> {
+    factorise(u64::from(s))
+        .into_iter()
+        .flat_map(|(p, e)| std::iter::repeat_n(u16::try_from(p).unwrap_or(u16::MAX), e as usize))
+        .collect()
+}
+
+impl SchemeBook {
+    /// The book over the given Hadamard matrices with the given stored schemes.
+    #[must_use]
+    pub fn new(hadamard: Arc<HadamardBook>, seeds: impl IntoIterator<Item = SchemeRecipe>) -> Self {
+        let mut book = Self { hadamard, ..Self::default() };
+        for seed in seeds {
+            let Some(Shape { rows, columns, order }) = seed.shape() else { continue };
+            let known = book.seeds.get(&(rows, order)).and_then(|s| s.shape());
+            if known.is_none_or(|k| k.columns < columns) {
+                book.seeds.insert((rows, order), Arc::new(seed));
+            }
+        }
+        book
+    }
+
+    /// The scheme D(rows, c, order) with the largest c known here; `None` when `rows` or `order`
+    /// is below 2, when `order` is above 65,535, or the scheme would have more than 2^28 cells.
+    #[must_use]
+    pub fn best(&self, rows: u32, order: u32) -> Option<Best> {
+        if rows < 2 || order < 2 || order > u32::from(u16::MAX) {
+            return None;
+        }
+        if let Some(known) = lock(&self.memo).get(&(rows, order)) {
+            return known.clone();
+        }
+        let found = self.find(rows, order);
+        lock(&self.memo).insert((rows, order), found.clone());
+        found
+    }
+
+    fn find(&self, r: u32, s: u32) -> Option<Best> {
+        let mut best = Best {
+            columns: 1,
+            recipe: Arc::new(SchemeRecipe::Zero { rows: r, group: standard_group(s) }),
+        };
+        let mut offer = |recipe: SchemeRecipe| {
+            let Some(shape) = recipe.shape() else { return };
+            debug_assert_eq!((shape.rows, shape.order), (r, s));
+            if shape.columns > best.columns && u64::from(shape.columns) * u64::from(r) <= 1 << 28 {
+                best = Best { columns: shape.columns, recipe: Arc::new(recipe) };
+            }
+        };
+        if !r.is_multiple_of(s) {
+            return Some(best);
+        }
+        if let (Some((p, b)), Some((p2, a))) = (prime_power(s), prime_power(r))
+            && p == p2
+        {
+            offer(SchemeRecipe::FieldTable { p, a, b });
+        }
+        if let Some((p, _)) = prime_power(s)
+            && p > 2
+            && r == 2 * s
+        {
+            offer(SchemeRecipe::Masuyama { q: s });
+        }
+        if s == 2
+            && let Some(matrix) = self.hadamard.get(r)
+        {
+            offer(SchemeRecipe::Hadamard { matrix });
+        }
+        if let Some(seed) = self.seeds.get(&(r, s)) {
+            offer((**seed).clone());
+        }
+        for r1 in (s..r).step_by(s as usize).filter(|r1| r.is_multiple_of(*r1)) {
+            if let (Some(left), Some(right)) = (self.best(r1, s), self.best(r / r1, s)) {
+                offer(SchemeRecipe::KroneckerSum { left: left.recipe, right: right.recipe });
+            }
+        }
+        self.direct_sums(r, s, &mut offer);
+        Some(best)
+    }
+
+    fn direct_sums(&self, r: u32, s: u32, offer: &mut impl FnMut(SchemeRecipe)) {
+        let group = standard_group(s);
+        for s1 in (2..s).filter(|s1| s.is_multiple_of(*s1)) {
+            let concatenated: Vec<u16> =
+                standard_group(s1).into_iter().chain(standard_group(s / s1)).collect();
+            if concatenated != group {
+                continue;
+            }
+            for r1 in (s1..r).step_by(s1 as usize).filter(|r1| r.is_multiple_of(*r1)) {
+                let (Some(left), Some(right)) = (self.best(r1, s1), self.best(r / r1, s / s1)) else {
+                    continue;
+                };
+                if left.columns.min(right.columns) > 1 {
+                    offer(SchemeRecipe::DirectSum { left: left.recipe, right: right.recipe });
+                }
+            }
+        }
+    }
+}
+
+fn lock<T>(mutex: &Mutex<T>) -> std::sync::MutexGuard<'_, T> {
+    mutex.lock().unwrap_or_else(std::sync::PoisonError::into_inner)
+}
