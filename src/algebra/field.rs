@@ -35,7 +35,7 @@ impl Field {
             let modulus = vec![0, 1];
             let (generator, exp) = (1..p)
                 .find_map(|g| {
-                    powers(p, p, |a| (u64::from(a) * u64::from(g) % u64::from(p)) as u32).map(|e| (g, e))
+                    powers(p, |a| (u64::from(a) * u64::from(g) % u64::from(p)) as u32).map(|e| (g, e))
                 })
                 .expect("every prime has a primitive root");
             return Ok(Self::with_tables(p, 1, q, modulus, generator, exp));
@@ -46,7 +46,7 @@ impl Field {
                 continue;
             }
             modulus.push(1);
-            if let Some(exp) = powers(q, p, |a| times_x(a, p, q, &modulus)) {
+            if let Some(exp) = powers(q, |a| times_x(a, p, q, &modulus)) {
                 return Ok(Self::with_tables(p, degree, q, modulus, p, exp));
             }
         }
@@ -226,7 +226,7 @@ fn times_x(a: u32, p: u32, q: u32, modulus: &[u32]) -> u32 {
 
 /// The powers of the element `g` whose multiplication is `step`, if they are all q - 1 non-zero
 /// elements.
-fn powers(q: u32, _p: u32, step: impl Fn(u32) -> u32) -> Option<Vec<u16>> {
+fn powers(q: u32, step: impl Fn(u32) -> u32) -> Option<Vec<u16>> {
     let mut exp = Vec::with_capacity(q as usize - 1);
     let mut a = 1u32;
     loop {
@@ -246,4 +246,141 @@ fn powers(q: u32, _p: u32, step: impl Fn(u32) -> u32) -> Option<Vec<u16>> {
 #[must_use]
 pub fn prime_powers(low: u32, high: u32) -> Vec<u32> {
     (low.max(2)..=high).filter(|&q| is_prime(q) || prime_power(q).is_some()).collect()
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+    use proptest::prelude::*;
+
+    /// The axioms at one triple of elements.
+    fn axioms(f: &Field, a: u16, b: u16, c: u16) {
+        let (add, mul) = (|x, y| f.add(x, y), |x, y| f.mul(x, y));
+        let q = f.order();
+        assert!(u32::from(add(a, b)) < q && u32::from(mul(a, b)) < q);
+        assert_eq!(add(add(a, b), c), add(a, add(b, c)), "GF({q}): {a} {b} {c}");
+        assert_eq!(mul(mul(a, b), c), mul(a, mul(b, c)), "GF({q}): {a} {b} {c}");
+        assert_eq!(mul(a, add(b, c)), add(mul(a, b), mul(a, c)), "GF({q}): {a} {b} {c}");
+    }
+
+    /// What must hold for every pair of elements.
+    fn pair(f: &Field, a: u16, b: u16) {
+        assert_eq!(f.add(a, b), f.add(b, a));
+        assert_eq!(f.mul(a, b), f.mul(b, a));
+        assert_eq!(f.sub(f.add(a, b), b), a);
+        assert_eq!(f.sub(a, b), f.add(a, f.neg(b)));
+        assert_eq!(f.mul(a, b) == 0, a == 0 || b == 0, "no zero divisors");
+    }
+
+    /// What must hold for every element.
+    fn single(f: &Field, a: u16) {
+        assert_eq!((f.add(a, 0), f.mul(a, 1), f.mul(a, 0)), (a, a, 0));
+        assert_eq!(f.add(a, f.neg(a)), 0);
+        assert_eq!(f.inv(a).map(|i| f.mul(a, i)), (a != 0).then_some(1));
+        assert_eq!(f.log(a).map(|e| f.pow(f.generator(), e)), (a != 0).then_some(a));
+        assert_eq!(f.pow(a, 3), f.mul(a, f.mul(a, a)));
+        assert_eq!(f.pow(a, f.order()), a, "x^q = x");
+        assert_eq!((f.pow(a, 0), f.pow(a, 1)), (1, a));
+        let multiple = (0..f.characteristic()).fold(0, |sum, _| f.add(sum, a));
+        assert_eq!(multiple, 0, "p times anything is zero");
+        let digits = f.digits(a);
+        assert_eq!(digits.len() as u32, f.degree());
+        assert_eq!(digits.iter().rev().fold(0, |n, &d| n * f.characteristic() + u32::from(d)), u32::from(a));
+    }
+
+    #[test]
+    fn axioms_of_every_field_up_to_64() {
+        for q in prime_powers(2, 64) {
+            let f = Field::new(q).unwrap();
+            assert_eq!(f.order(), f.characteristic().pow(f.degree()));
+            for a in f.elements() {
+                single(&f, a);
+                for b in f.elements() {
+                    pair(&f, a, b);
+                    for c in f.elements() {
+                        axioms(&f, a, b, c);
+                    }
+                }
+            }
+            let squares: Vec<bool> =
+                f.elements().map(|a| a != 0 && f.elements().any(|b| f.mul(b, b) == a)).collect();
+            assert!(f.elements().all(|a| f.is_nonzero_square(a) == squares[a as usize]), "GF({q})");
+        }
+    }
+
+    #[test]
+    fn axioms_sampled_in_larger_fields() {
+        let large = [
+            81, 121, 125, 128, 169, 243, 251, 256, 343, 512, 625, 729, 961, 1024, 1331, 2048, 2187, 2401,
+            3125, 3721, 4093, 4096, 32749, 32768, 59049, 65521,
+        ];
+        for q in large {
+            let f = Field::new(q).unwrap();
+            let step = (q / 29).max(1) as usize;
+            let sample: Vec<u16> =
+                f.elements().step_by(step).chain(f.elements().rev().take(3)).chain([1, 2]).collect();
+            for &a in &sample {
+                single(&f, a);
+                for &b in &sample {
+                    pair(&f, a, b);
+                    for &c in &sample {
+                        axioms(&f, a, b, c);
+                    }
+                }
+            }
+        }
+    }
+
+    #[test]
+    fn the_generator_generates() {
+        for q in prime_powers(2, 4096) {
+            let f = Field::new(q).unwrap();
+            let mut seen = vec![false; q as usize];
+            let mut a = 1;
+            for _ in 1..q {
+                assert!(!std::mem::replace(&mut seen[a as usize], true), "GF({q})");
+                a = f.mul(a, f.generator());
+            }
+            assert_eq!(a, 1);
+            assert!(!seen[0]);
+            if f.degree() > 1 {
+                assert_eq!(u32::from(f.generator()), f.characteristic());
+                let value = f
+                    .modulus()
+                    .iter()
+                    .enumerate()
+                    .fold(0, |sum, (i, &c)| f.add(sum, f.mul(c as u16, f.pow(f.generator(), i as u32))));
+                assert_eq!(value, 0, "GF({q}): x is a root of the modulus");
+            }
+        }
+    }
+
+    #[test]
+    fn there_is_no_other_field() {
+        let orders = prime_powers(0, 100);
+        for q in 0..=100 {
+            assert_eq!(Field::new(q).is_ok(), orders.contains(&q), "{q}");
+        }
+        for q in [6, 12, 1000, 4095, 65535, 65536, 65537, 1 << 17, u32::MAX] {
+            assert_eq!(Field::new(q).unwrap_err(), AlgebraError::NotAPrimePower { q });
+        }
+        assert_eq!(prime_powers(65000, 65535).last(), Some(&65521));
+        assert!(prime_powers(10, 2).is_empty());
+    }
+
+    #[test]
+    #[should_panic(expected = "4 is not an element of GF(4)")]
+    fn elements_are_checked() {
+        let _ = Field::new(4).unwrap().add(4, 0);
+    }
+
+    proptest! {
+        #[test]
+        fn axioms_at_random(q in prop::sample::select(prime_powers(64, 4096)), a: u16, b: u16, c: u16) {
+            let f = Field::new(q).unwrap();
+            let element = |x: u16| (u32::from(x) % q) as u16;
+            axioms(&f, element(a), element(b), element(c));
+            pair(&f, element(a), element(b));
+        }
+    }
 }

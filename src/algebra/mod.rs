@@ -2,12 +2,17 @@
 
 mod field;
 mod group;
+mod linear;
 mod number;
 
 use thiserror::Error;
 
 pub use field::{Field, prime_powers};
 pub use group::AbelianGroup;
+pub use linear::{
+    Echelon, dot, first_dependent, independent, null_space, projective_point_count, projective_points, rank,
+    row_echelon, span, unit, vector,
+};
 pub use number::{divisors, factorise, is_prime, prime_power};
 
 /// What can be wrong with a request for an algebraic object.
