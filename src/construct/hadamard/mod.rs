@@ -1,0 +1,59 @@
+//! Hadamard matrices: n × n matrices H over ±1 with H·Hᵀ = nI, and through
+//! [`Hadamard::to_array`] the saturated arrays OA(n, 2^{n−1}, 2).
+//!
+//! An order above 2 is a multiple of 4. When to prefer which:
+//!
+//! | order n | use |
+//! | --- | --- |
+//! | 2^k | [`sylvester`]: linear, every column a sum of k generators |
+//! | q + 1, q ≡ 3 (mod 4) a prime power | [`paley_one`] |
+//! | 2(q + 1), q ≡ 1 (mod 4) a prime power | [`paley_two`] |
+//! | 4q, q ≡ 1 (mod 4) a prime power, H(q − 1) known | [`miyamoto`] |
+//! | a product of two orders that are known | [`kronecker`] |
+//! | 4m otherwise | [`goethals_seidel`] from four rows that somebody found (Williamson's are the symmetric ones) |
+//! | 4(3n − 1) otherwise | [`turyn_type`] from a set of Turyn-type sequences |
+//!
+//! The first five need nothing but the order. Where several reach the same order they give
+//! matrices that are in general not equivalent; prefer the row that stands higher, which costs
+//! less and has the larger group of symmetries. The data for the last two are arguments; those
+//! known to the project lie in the folder `catalog/`.
+
+mod four_circulants;
+mod kronecker;
+mod matrix;
+mod miyamoto;
+mod paley_one;
+mod paley_two;
+mod sylvester;
+mod turyn;
+
+pub use four_circulants::goethals_seidel;
+pub use kronecker::kronecker;
+pub use matrix::{Hadamard, MAX_ORDER};
+pub use miyamoto::miyamoto;
+pub use paley_one::paley_one;
+pub use paley_two::paley_two;
+pub use sylvester::sylvester;
+pub use turyn::turyn_type;
+
+use super::ConstructError;
+use crate::algebra::Field;
+
+/// Which elements of the field are squares of non-zero elements, indexed by element.
+fn squares(field: &Field) -> Vec<bool> {
+    field.elements().map(|a| field.is_nonzero_square(a)).collect()
+}
+
+/// Refuses a sequence with an entry other than ±1.
+fn check_signs(construction: &'static str, name: &str, signs: &[i8]) -> Result<(), ConstructError> {
+    match signs.iter().position(|&e| e != 1 && e != -1) {
+        None => Ok(()),
+        Some(i) => Err(ConstructError::condition(
+            construction,
+            format!("every entry is 1 or -1, but entry {i} of {name} is {}", signs[i]),
+        )),
+    }
+}
+
+#[cfg(test)]
+mod tests;

@@ -1,0 +1,53 @@
+//! Difference schemes D(r, c, s): r × c arrays over an abelian group of order s in which the
+//! difference of any two columns takes every group value r/s times.
+//!
+//! A scheme becomes an array by [`developed`] (OA(rs, s^c, 2)) or [`developed_with_rows`]
+//! (OA(rs, s^c · r, 2)), and with other arrays by the generalised Kronecker sum. When to prefer
+//! which for a wanted (r, s):
+//!
+//! | r | c | use |
+//! | --- | --- | --- |
+//! | p^a, s = p^b, a ≥ b | r | [`field_table`]: linear, so the developed array is linear as well |
+//! | 2s, s a prime power | r | [`masuyama`] (s even: the field table) |
+//! | a Hadamard order, s = 2 | r | [`from_hadamard`] |
+//! | r1·r2, both over the group | c1·c2 | [`kronecker_sum`], also with [`zero_column`] (c2 = 1) for every multiple of r1 |
+//! | a scheme over a group of which s is a quotient | c | [`image`] |
+//! | r1·r2, s = s1·s2 | min(c1, c2) | [`direct_sum`], the only one here for an s that is no prime power |
+//! | anything else | c | [`from_starter`] with columns that somebody found |
+//!
+//! No column number exceeds r (Jungnickel 1979), so the first three cannot be beaten; among the
+//! rest take the one with the most columns. The data for the last are arguments; those known to
+//! the project lie in the folder `catalog/`.
+//!
+//! [`bose_bush`] is the array OA(λs², s^{λs+1}, 2) that a square scheme over a field gives at once.
+
+mod bose_bush;
+mod developed;
+mod difference;
+mod direct_sum;
+mod field_table;
+mod from_hadamard;
+mod from_starter;
+mod group;
+mod image;
+mod kronecker_sum;
+mod masuyama;
+mod zero_column;
+
+pub use bose_bush::bose_bush;
+pub use developed::{developed, developed_with_rows};
+pub use difference::Scheme;
+pub use direct_sum::direct_sum;
+pub use field_table::field_table;
+pub use from_hadamard::from_hadamard;
+pub use from_starter::from_starter;
+pub use group::canonical_group;
+pub use image::image;
+pub use kronecker_sum::kronecker_sum;
+pub use masuyama::masuyama;
+pub use zero_column::zero_column;
+
+#[cfg(test)]
+pub(crate) mod by_definition;
+#[cfg(test)]
+mod tests;
