@@ -31,6 +31,13 @@ pub use scheme::{SchemeRecipe, Shape};
 #[cfg_attr(feature = "schema", derive(schemars::JsonSchema))]
 #[non_exhaustive]
 pub enum Recipe {
+    /// The levels of every factor in turn: strength 1.
+    Balanced {
+        /// The number of runs, a multiple of every factor's levels.
+        runs: u32,
+        /// The levels of the factors.
+        levels: Vec<u16>,
+    },
     /// All level combinations once.
     FullFactorial {
         /// The levels of the factors.
