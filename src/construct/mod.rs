@@ -4,6 +4,9 @@
 //! difference scheme) whose strength the cited theorem guarantees. Nothing is judged here: whoever
 //! hands an array out passes it through `verify` first.
 
+pub mod compose;
+pub mod strength3;
+
 use thiserror::Error;
 
 use crate::algebra::AlgebraError;
