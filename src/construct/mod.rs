@@ -6,6 +6,8 @@
 
 pub mod hadamard;
 pub mod scheme;
+pub mod compose;
+pub mod strength3;
 
 use thiserror::Error;
 

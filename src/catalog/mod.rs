@@ -1,0 +1,30 @@
+//! The shelf: what can be had at N runs.
+//!
+//! | file | what lives there |
+//! | --- | --- |
+//! | `seed` | the stored starters of the folder `catalog/` |
+//! | `books` | which Hadamard matrices and difference schemes can be had |
+//! | `strength_two`, `strength_three`, `strength_any` | the families and compositions offered at N runs |
+//! | `compositions` | products and juxtaposition, which keep any strength |
+//! | `fit` | the exact packing of a mix into a parent |
+//! | `candidates` | the maximal ones among the mixes offered |
+//! | `arrange` | from a packing to a recipe |
+//! | `shelf` | all of it together, worked out on demand |
+
+mod arrange;
+mod bag;
+mod books;
+mod candidates;
+mod compositions;
+mod fit;
+pub mod seed;
+mod shelf;
+mod strength_any;
+mod strength_three;
+mod strength_two;
+
+pub use arrange::arrange;
+pub use bag::Bag;
+pub use books::{Best, HadamardBook, SchemeBook, standard_group};
+pub use fit::{Host, Packer, Placement};
+pub use shelf::{CLOSED, Parent, Shelf, Variant};
