@@ -6,3 +6,4 @@ pub mod algebra;
 pub mod array;
 pub mod construct;
 pub mod mix;
+pub mod verify;
