@@ -7,3 +7,4 @@ pub mod array;
 pub mod construct;
 pub mod floor;
 pub mod mix;
+pub mod verify;

@@ -1,0 +1,124 @@
+//! Which engine judges how far.
+
+use serde::{Deserialize, Serialize};
+
+use super::evidence::Witness;
+use super::{JudgeError, counting, distance};
+use crate::array::Array;
+
+/// Work of so many word operations (some tenths of a second) is done without being asked for.
+const AFFORDABLE: u128 = 1 << 28;
+
+/// One of the two judges.
+#[derive(Clone, Copy, Debug, PartialEq, Eq, PartialOrd, Ord, Serialize, Deserialize)]
+#[serde(rename_all = "kebab-case")]
+#[cfg_attr(feature = "schema", derive(schemars::JsonSchema))]
+pub enum Engine {
+    /// [`counting`](super::counting): by the definition.
+    Counting,
+    /// [`distance`](super::distance): by the dual distribution.
+    Distance,
+}
+
+/// What the engines found.
+pub(super) struct Findings {
+    /// A strength that the array has.
+    pub(super) strength: usize,
+    /// Whether it is the largest.
+    pub(super) exact: bool,
+    /// B_1, …, of length [`pattern_length`].
+    pub(super) pattern: Option<Vec<String>>,
+    /// Why `strength` + 1 fails, when counting met the failure.
+    pub(super) witness: Option<Witness>,
+    /// Who found it, ascending.
+    pub(super) engines: Vec<Engine>,
+}
+
+/// The entries of a certificate's word-length pattern: `max(strength + 2, min(k, 6))`, at most k.
+pub(super) fn pattern_length(strength: usize, factors: usize) -> usize {
+    strength.saturating_add(2).max(6).min(factors)
+}
+
+/// The largest t for which the t largest numbers of levels have a product of at most N: no array
+/// with these levels is stronger.
+pub(super) fn strength_ceiling(array: &Array) -> usize {
+    let mut levels = array.levels().to_vec();
+    levels.sort_unstable();
+    let mut left = array.runs();
+    levels
+        .iter()
+        .rev()
+        .take_while(|&&s| {
+            left /= usize::from(s);
+            left > 0
+        })
+        .count()
+}
+
+/// Finds the strength of `array`: whether it reaches `required` at any cost, and a little further
+/// as far as this is affordable.
+pub(super) fn investigate(array: &Array, required: usize, thorough: bool) -> Result<Findings, JudgeError> {
+    let ceiling = strength_ceiling(array);
+    let limit = ceiling.min(required.max(3).saturating_add(1));
+    let must = required.min(ceiling);
+    let counting_cost = (1..=must).fold(0u128, |sum, t| sum.saturating_add(counting_cost(array, t)));
+    let degree = pattern_length(limit, array.factors());
+    let by_distance = thorough || distance::cost(array, degree) <= counting_cost.max(AFFORDABLE);
+    let counted = (thorough || !by_distance).then(|| count(array, must, limit));
+    if !by_distance {
+        let (strength, witness) = counted.expect("one of the engines runs");
+        let exact = witness.is_some() || strength == ceiling;
+        return Ok(Findings { strength, exact, pattern: None, witness, engines: vec![Engine::Counting] });
+    }
+    let dual = distance::dual_distribution(array, degree);
+    let strength = dual.strength().min(limit);
+    let mut engines = vec![Engine::Distance];
+    let mut witness = None;
+    if let Some((counting, failure)) = counted {
+        if counting > strength || (failure.is_some() && counting != strength) {
+            return Err(JudgeError::Disagreement { counting, distance: strength });
+        }
+        witness = failure;
+        engines.insert(0, Engine::Counting);
+    }
+    let mut pattern = dual.word_length_pattern();
+    pattern.truncate(pattern_length(strength, array.factors()));
+    let exact = strength < limit || limit == ceiling;
+    Ok(Findings { strength, exact, pattern: Some(pattern), witness, engines })
+}
+
+/// The strength by counting, up to `must` at any cost, up to `limit` while affordable; and why
+/// the next one fails, if it was seen to.
+fn count(array: &Array, must: usize, limit: usize) -> (usize, Option<Witness>) {
+    let slices = counting::Slices::new(array);
+    for t in 1..=limit {
+        if t > must && counting_cost(array, t) > AFFORDABLE {
+            return (t - 1, None);
+        }
+        if let Some(witness) = slices.violation(t) {
+            return (t - 1, Some(witness));
+        }
+    }
+    (limit, None)
+}
+
+/// An estimate of the word operations of counting all sets of `t` columns.
+pub(super) fn counting_cost(array: &Array, t: usize) -> u128 {
+    let runs = array.runs() as u128;
+    let elementary = |weight: &dyn Fn(u16) -> u128| {
+        let mut sums = vec![0u128; t + 1];
+        sums[0] = 1;
+        for &s in array.levels() {
+            for j in (1..=t).rev() {
+                sums[j] = sums[j].saturating_add(sums[j - 1].saturating_mul(weight(s)));
+            }
+        }
+        sums[t]
+    };
+    let by_histogram = elementary(&|_| 1).saturating_mul(2 * runs);
+    if array.levels().iter().any(|&s| s > counting::SLICED_LEVELS) {
+        return by_histogram;
+    }
+    let by_slices = elementary(&|s| u128::from(s - 1)).saturating_mul(runs.div_ceil(64) + 2);
+    by_histogram.min(by_slices)
+}

@@ -1,0 +1,5 @@
+//! The judges, from outside.
+
+mod certificates;
+mod engines;
+mod samples;
