@@ -4,6 +4,10 @@
 //! difference scheme) whose strength the cited theorem guarantees. Nothing is judged here: whoever
 //! hands an array out passes it through `verify` first.
 
+pub mod field;
+#[cfg(test)]
+mod testing;
+
 use thiserror::Error;
 
 use crate::algebra::AlgebraError;
