@@ -8,6 +8,9 @@ pub mod hadamard;
 pub mod scheme;
 pub mod compose;
 pub mod strength3;
+pub mod field;
+#[cfg(test)]
+mod testing;
 
 use thiserror::Error;
 
