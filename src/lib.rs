@@ -4,7 +4,10 @@
 
 pub mod algebra;
 pub mod array;
+pub mod catalog;
 pub mod construct;
 pub mod floor;
 pub mod mix;
+pub mod recipe;
+pub mod seek;
 pub mod verify;

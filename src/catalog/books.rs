@@ -3,30 +3,26 @@
 use std::collections::HashMap;
 use std::sync::{Arc, Mutex};
 
+use super::seed::{self, SchemeEntry, SeedKind};
 use crate::algebra::{factorise, prime_power};
-use crate::recipe::{HadamardRecipe, SchemeRecipe, Shape};
+use crate::recipe::{HadamardRecipe, SchemeRecipe};
 
 /// The largest order of a Hadamard matrix that is looked for.
-pub const MAX_ORDER: u32 = 65_536;
+const MAX_ORDER: u32 = 65_536;
 
 /// Hadamard matrices by order.
-#[derive(Debug, Default)]
+#[derive(Debug)]
 pub struct HadamardBook {
-    seeds: HashMap<u32, Arc<HadamardRecipe>>,
+    seeds: HashMap<usize, &'static str>,
     memo: Mutex<HashMap<u32, Option<Arc<HadamardRecipe>>>>,
 }
 
 impl HadamardBook {
-    /// The book with the given stored matrices.
+    /// The book of all constructions and all stored matrices.
     #[must_use]
-    pub fn new(seeds: impl IntoIterator<Item = HadamardRecipe>) -> Self {
-        let mut book = Self::default();
-        for seed in seeds {
-            if let Some(order) = seed.order() {
-                book.seeds.entry(order).or_insert_with(|| Arc::new(seed));
-            }
-        }
-        book
+    pub fn new() -> Self {
+        let seeds = seed::hadamard_orders().map(|entry| (entry.order, entry.name)).collect();
+        Self { seeds, memo: Mutex::default() }
     }
 
     /// A Hadamard matrix of order `n`, if one is known here: Sylvester, then Paley I, Paley II,
@@ -55,8 +51,8 @@ impl HadamardBook {
         if q % 4 == 1 && prime_power(q).is_some() {
             return Some(Arc::new(HadamardRecipe::PaleyTwo { q }));
         }
-        if let Some(seed) = self.seeds.get(&n) {
-            return Some(Arc::clone(seed));
+        if let Some(stored) = self.seeds.get(&(n as usize)).and_then(|name| stored_matrix(name)) {
+            return Some(Arc::new(stored));
         }
         (2..).take_while(|a| a * a <= n).filter(|a| n.is_multiple_of(*a)).find_map(|a| {
             let (left, right) = (self.get(a)?, self.get(n / a)?);
@@ -65,11 +61,24 @@ impl HadamardBook {
     }
 }
 
+fn stored_matrix(name: &str) -> Option<HadamardRecipe> {
+    let text = |signs: &Vec<i8>| signs.iter().map(|&x| if x > 0 { '+' } else { '-' }).collect::<String>();
+    match seed::find(name)?.kind {
+        SeedKind::FourCirculants { rows, .. } => {
+            Some(HadamardRecipe::FourCirculants { rows: rows.each_ref().map(text) })
+        }
+        SeedKind::TurynType { sequences } => {
+            Some(HadamardRecipe::TurynType { sequences: sequences.each_ref().map(text) })
+        }
+        _ => None,
+    }
+}
+
 /// Difference schemes by number of rows and order of the group.
-#[derive(Debug, Default)]
+#[derive(Debug)]
 pub struct SchemeBook {
     hadamard: Arc<HadamardBook>,
-    seeds: HashMap<(u32, u32), Arc<SchemeRecipe>>,
+    seeds: HashMap<(usize, u32), SchemeEntry>,
     memo: Mutex<HashMap<(u32, u32), Option<Best>>>,
 }
 
@@ -92,19 +101,24 @@ pub fn standard_group(s: u32) -> Vec<u16> {
         .collect()
 }
 
+impl Default for HadamardBook {
+    fn default() -> Self {
+        Self::new()
+    }
+}
+
 impl SchemeBook {
-    /// The book over the given Hadamard matrices with the given stored schemes.
+    /// The book of all constructions, over the given Hadamard matrices, and all stored schemes.
     #[must_use]
-    pub fn new(hadamard: Arc<HadamardBook>, seeds: impl IntoIterator<Item = SchemeRecipe>) -> Self {
-        let mut book = Self { hadamard, ..Self::default() };
-        for seed in seeds {
-            let Some(Shape { rows, columns, order }) = seed.shape() else { continue };
-            let known = book.seeds.get(&(rows, order)).and_then(|s| s.shape());
-            if known.is_none_or(|k| k.columns < columns) {
-                book.seeds.insert((rows, order), Arc::new(seed));
+    pub fn new(hadamard: Arc<HadamardBook>) -> Self {
+        let mut seeds: HashMap<(usize, u32), SchemeEntry> = HashMap::new();
+        for entry in seed::schemes() {
+            let known = seeds.entry((entry.rows, u32::from(entry.order))).or_insert(entry);
+            if known.columns < entry.columns {
+                *known = entry;
             }
         }
-        book
+        Self { hadamard, seeds, memo: Mutex::default() }
     }
 
     /// The scheme D(rows, c, order) with the largest c known here; `None` when `rows` or `order`
@@ -123,10 +137,8 @@ impl SchemeBook {
     }
 
     fn find(&self, r: u32, s: u32) -> Option<Best> {
-        let mut best = Best {
-            columns: 1,
-            recipe: Arc::new(SchemeRecipe::Zero { rows: r, group: standard_group(s) }),
-        };
+        let mut best =
+            Best { columns: 1, recipe: Arc::new(SchemeRecipe::Zero { rows: r, group: standard_group(s) }) };
         let mut offer = |recipe: SchemeRecipe| {
             let Some(shape) = recipe.shape() else { return };
             debug_assert_eq!((shape.rows, shape.order), (r, s));
@@ -153,8 +165,11 @@ impl SchemeBook {
         {
             offer(SchemeRecipe::Hadamard { matrix });
         }
-        if let Some(seed) = self.seeds.get(&(r, s)) {
-            offer((**seed).clone());
+        if let Some(entry) = self.seeds.get(&(r as usize, s))
+            && let Some(SeedKind::DifferenceScheme { group, columns }) =
+                seed::find(entry.name).map(|s| s.kind)
+        {
+            offer(SchemeRecipe::Starter { group, columns });
         }
         for r1 in (s..r).step_by(s as usize).filter(|r1| r.is_multiple_of(*r1)) {
             if let (Some(left), Some(right)) = (self.best(r1, s), self.best(r / r1, s)) {

@@ -11,7 +11,7 @@ use crate::recipe::Recipe;
 /// Mixes with the way to their recipes, in the order in which they are offered. Of equal mixes the
 /// first stays, so simple constructions are offered first.
 #[derive(Default)]
-pub struct Candidates<'a> {
+pub(super) struct Candidates<'a> {
     seen: HashSet<Bag>,
     offers: Vec<Offer<'a>>,
 }
@@ -24,7 +24,7 @@ struct Offer<'a> {
 
 impl<'a> Candidates<'a> {
     /// Offers a mix; `make` is called only if it turns out to be maximal.
-    pub fn offer(&mut self, bag: Bag, source: &str, make: impl FnOnce() -> Arc<Recipe> + 'a) {
+    pub(super) fn offer(&mut self, bag: Bag, source: &str, make: impl FnOnce() -> Arc<Recipe> + 'a) {
         if self.seen.insert(bag.clone()) {
             self.offers.push(Offer { bag, source: source.to_owned(), make: Box::new(make) });
         }
@@ -33,7 +33,7 @@ impl<'a> Candidates<'a> {
     /// The mixes that cannot be obtained from another one by splitting, merging and dropping;
     /// most degrees of freedom first.
     #[must_use]
-    pub fn maximal(mut self, packer: &Packer<'_>) -> Vec<Arc<Parent>> {
+    pub(super) fn maximal(mut self, packer: &Packer<'_>) -> Vec<Arc<Parent>> {
         // Splitting keeps or lowers the degrees of freedom and raises the number of factors, so
         // in this order a mix can only be obtained from an earlier one.
         self.offers.sort_by(|a, b| {

@@ -8,7 +8,6 @@ use super::bag::Bag;
 use super::books::{HadamardBook, SchemeBook};
 use super::candidates::Candidates;
 use super::fit::{Host, Packer, Placement};
-use super::seed::{Seeds, Stored};
 use super::{strength_any, strength_three, strength_two};
 use crate::recipe::Recipe;
 
@@ -66,7 +65,6 @@ pub struct Shelf {
     pub hadamard: Arc<HadamardBook>,
     /// The difference schemes.
     pub schemes: SchemeBook,
-    stored: Vec<Stored>,
     parents: Mutex<HashMap<(u32, u64), Arc<Vec<Arc<Parent>>>>>,
     variants: Mutex<HashMap<(u32, u64), Arc<Vec<Variant>>>>,
 }
@@ -81,12 +79,10 @@ impl Shelf {
     /// The shelf with everything that is stored in the crate.
     #[must_use]
     pub fn new() -> Self {
-        let seeds = Seeds::embedded();
-        let hadamard = Arc::new(HadamardBook::new(seeds.hadamard()));
+        let hadamard = Arc::new(HadamardBook::new());
         Self {
-            schemes: SchemeBook::new(Arc::clone(&hadamard), seeds.schemes()),
+            schemes: SchemeBook::new(Arc::clone(&hadamard)),
             hadamard,
-            stored: seeds.arrays(),
             parents: Mutex::default(),
             variants: Mutex::default(),
         }
@@ -105,10 +101,6 @@ impl Shelf {
             return Arc::clone(known);
         }
         let mut candidates = Candidates::default();
-        for stored in self.stored.iter().filter(|s| s.runs == runs && s.strength >= strength) {
-            let recipe = Arc::clone(&stored.recipe);
-            candidates.offer(stored.bag.clone(), &stored.source, move || recipe);
-        }
         match strength {
             0 | 1 => {}
             2 => strength_two::collect(self, runs, &mut candidates),

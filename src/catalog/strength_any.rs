@@ -43,7 +43,8 @@ pub(super) fn full_factorials(runs: u64, candidates: &mut Candidates<'_>) {
         if let (Ok(a), Ok(b)) = (u16::try_from(s), u16::try_from(runs / s)) {
             let mut bag = Bag::from_pairs([(a, 1)]);
             bag.add(b, 1);
-            candidates.offer(bag, "full factorial", move || Arc::new(Recipe::FullFactorial { levels: vec![a, b] }));
+            candidates
+                .offer(bag, "full factorial", move || Arc::new(Recipe::FullFactorial { levels: vec![a, b] }));
         }
     }
 }

@@ -35,9 +35,11 @@ fn geometry(n: u32, candidates: &mut Candidates<'_>) {
             });
         }
         if e == 4 {
-            candidates.offer(Bag::from_pairs([(level, q * q + 1)]), "elliptic quadric (Bose 1947)", move || {
-                Arc::new(Recipe::Ovoid { q })
-            });
+            candidates.offer(
+                Bag::from_pairs([(level, q * q + 1)]),
+                "elliptic quadric (Bose 1947)",
+                move || Arc::new(Recipe::Ovoid { q }),
+            );
         }
         if (3..=q + 1).contains(&e)
             && let Ok(large) = u16::try_from(q.pow(e - 2))

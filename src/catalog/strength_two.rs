@@ -27,9 +27,8 @@ fn families<'a>(shelf: &'a Shelf, n: u32, candidates: &mut Candidates<'a>) {
         && let Some(matrix) = shelf.hadamard.get(n)
     {
         let source = "Hadamard matrix (Plackett & Burman 1946)";
-        candidates.offer(Bag::from_pairs([(2, n - 1)]), source, move || {
-            Arc::new(Recipe::Hadamard { matrix })
-        });
+        candidates
+            .offer(Bag::from_pairs([(2, n - 1)]), source, move || Arc::new(Recipe::Hadamard { matrix }));
     }
     for (q, e) in roots(n) {
         let factors = (n - 1) / (u32::from(q) - 1);

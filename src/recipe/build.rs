@@ -8,7 +8,7 @@ use crate::construct::scheme::{self, Scheme};
 use crate::construct::{field, strength3};
 
 /// A recipe nested deeper than this is refused.
-pub const MAX_DEPTH: usize = 64;
+pub(super) const MAX_DEPTH: usize = 64;
 
 impl Recipe {
     /// Builds the array: the same bytes every time, for any number of threads. It is *not* judged
@@ -31,9 +31,7 @@ impl Recipe {
             Self::Balanced { runs, levels } => balanced(*runs, levels)?,
             Self::FullFactorial { levels } => field::full_factorial(levels)?,
             Self::RaoHamming { q, n } => field::rao_hamming(*q, *n)?,
-            Self::Subspaces { q, n, subspaces, strength } => {
-                field::subspaces(*q, *n, subspaces, *strength)?
-            }
+            Self::Subspaces { q, n, subspaces, strength } => field::subspaces(*q, *n, subspaces, *strength)?,
             Self::LargeAndSmall { p, e, d } => field::large_and_small(*p, *e, *d)?,
             Self::Bush { q, t } => field::bush(*q, *t)?,
             Self::Ovoid { q } => field::ovoid(*q)?,

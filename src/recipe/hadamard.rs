@@ -80,7 +80,7 @@ impl HadamardRecipe {
             }
             Self::TurynType { sequences } => {
                 let [x, y, z, w] = sequences.each_ref().map(|r| signs(r));
-                hadamard::turyn_type([&x?, &y?, &z?, &w?])?
+                hadamard::turyn_type(&x?, &y?, &z?, &w?)?
             }
         })
     }

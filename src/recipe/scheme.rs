@@ -124,8 +124,11 @@ impl SchemeRecipe {
     /// A [`RecipeError`] when a condition of the construction does not hold.
     pub fn build(&self) -> Result<Scheme, RecipeError> {
         Ok(match self {
-            Self::Zero { rows, group } => scheme::zero_column(*rows, &AbelianGroup::new(group)?)?,
-            Self::FieldTable { p, a, b } => scheme::field_table(*p, *a, *b)?,
+            Self::Zero { rows, group } => {
+                let order = AbelianGroup::new(group)?.order();
+                scheme::zero_column(*rows as usize, super::build::level(order)?)?
+            }
+            Self::FieldTable { p, a, b } => scheme::field_table(super::build::level(*p)?, *a, *b)?,
             Self::Masuyama { q } => scheme::masuyama(*q)?,
             Self::Hadamard { matrix } => scheme::from_hadamard(&matrix.build()?)?,
             Self::KroneckerSum { left, right } => scheme::kronecker_sum(&left.build()?, &right.build()?)?,

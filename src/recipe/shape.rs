@@ -164,18 +164,18 @@ impl Recipe {
                 times(sub(of)?, rows as usize)
             }
             Self::MergingProduct { inner, of, .. } => times(order(inner.order())?, sub(of)?),
-            Self::Juxtapose { parts } => parts.iter().try_fold(0usize, |n, p| {
-                n.checked_add(sub(&p.of)?).ok_or_else(too_many)
-            }),
+            Self::Juxtapose { parts } => {
+                parts.iter().try_fold(0usize, |n, p| n.checked_add(sub(&p.of)?).ok_or_else(too_many))
+            }
             Self::LevelProduct { left, right, .. } => times(sub(left)?, sub(right)?),
             Self::Arrange { of, .. } | Self::Group { of, .. } => sub(of),
             Self::Foldover { of } => times(2, sub(of)?),
             Self::EvenLevel { s, matrix } => times(*s as usize, order(matrix.order())?),
             Self::EightRunsPerLevel { s } => times(8, *s as usize),
             Self::TwoGrids { left, right } => times(2, times(left.shape()?.0, right.shape()?.0)?),
-            Self::Slices { parts, .. } => parts.iter().try_fold(0usize, |n, p| {
-                n.checked_add(sub(p)?).ok_or_else(too_many)
-            }),
+            Self::Slices { parts, .. } => {
+                parts.iter().try_fold(0usize, |n, p| n.checked_add(sub(p)?).ok_or_else(too_many))
+            }
             Self::Copies { of, times: c, .. } => times(*c as usize, sub(of)?),
         }
     }

@@ -172,7 +172,14 @@ pub fn seek_on(shelf: &Shelf, request: &Request) -> Result<Outcome, SeekError> {
     }
     let certificate = judgement.certificate.with_recipe(serde_json::to_value(&recipe).unwrap_or_default());
     let verdict = if runs == floor.runs { Verdict::ProvedSmallest } else { Verdict::SmallestKnown };
-    Ok(Outcome::Found(Box::new(Answer { request: request.clone(), verdict, floor, array, recipe, certificate })))
+    Ok(Outcome::Found(Box::new(Answer {
+        request: request.clone(),
+        verdict,
+        floor,
+        array,
+        recipe,
+        certificate,
+    })))
 }
 
 /// The smallest number of runs with a recipe for the request, its columns in order.

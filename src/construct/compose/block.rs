@@ -2,6 +2,7 @@
 
 use crate::algebra::AbelianGroup;
 use crate::construct::ConstructError;
+use crate::construct::scheme::Scheme;
 
 const NAME: &str = "difference block";
 
@@ -45,6 +46,14 @@ impl<'a> DifferenceBlock<'a> {
             return fail(format!("entries below the group order {order}, not {odd}"));
         }
         Ok(Self { group, order, rows, columns, cells })
+    }
+
+    /// The view of a whole scheme.
+    ///
+    /// # Errors
+    /// As [`DifferenceBlock::new`]; none in practice, since a [`Scheme`] keeps the same rules.
+    pub fn of_scheme(scheme: &'a Scheme) -> Result<Self, ConstructError> {
+        Self::new(scheme.group(), scheme.rows(), scheme.columns(), scheme.cells())
     }
 
     /// s, the order of the group.
