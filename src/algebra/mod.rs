@@ -1,6 +1,7 @@
 //! Finite fields, finite abelian groups, and linear algebra over GF(q).
 
 mod field;
+mod geometry;
 mod group;
 mod linear;
 mod number;
@@ -8,11 +9,9 @@ mod number;
 use thiserror::Error;
 
 pub use field::{Field, prime_powers};
+pub use geometry::{projective_point_count, projective_points, span, unit, vector};
 pub use group::AbelianGroup;
-pub use linear::{
-    Echelon, dot, first_dependent, independent, null_space, projective_point_count, projective_points, rank,
-    row_echelon, span, unit, vector,
-};
+pub use linear::{Echelon, dot, first_dependent, independent, null_space, rank, row_echelon};
 pub use number::{divisors, factorise, is_prime, prime_power};
 
 /// What can be wrong with a request for an algebraic object.

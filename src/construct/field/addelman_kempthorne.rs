@@ -47,7 +47,7 @@ const NAME: &str = "Addelman-Kempthorne";
 ///
 /// # Reference
 /// Addelman & Kempthorne 1961, *Some main-effect plans and orthogonal arrays of strength two*, for
-/// the parameters; the schemes are those of Masuyama 1957 (odd q) and Bose & Bush 1952 (even q), the
+/// the parameters (Hedayat, Sloane & Stufken 1999, section 3.3); the schemes are those of Masuyama 1957 (odd q) and Bose & Bush 1952 (even q), the
 /// sum of schemes that of Shrikhande 1964.
 ///
 /// ```

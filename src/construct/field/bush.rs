@@ -29,7 +29,8 @@ const NAME: &str = "Bush";
 /// O(q^(t+1)).
 ///
 /// # Reference
-/// Bush 1952, *Orthogonal arrays of index unity*, theorem 1 and, for even q, theorem 2.
+/// Bush 1952, *Orthogonal arrays of index unity*; Hedayat, Sloane & Stufken 1999, theorem 3.1 and, for
+/// the factor more when q is even, theorem 3.2.
 ///
 /// ```
 /// use trysquare::construct::field::bush;

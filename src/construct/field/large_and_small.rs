@@ -27,7 +27,7 @@ const NAME: &str = "one large and many small subspaces";
 /// O(p^(2e+d)), the number of cells.
 ///
 /// # Reference
-/// Wu, Zhang & Wang 1992; Hedayat, Sloane & Stufken 1999, section 9.3.
+/// Wu, Zhang & Wang 1992; Hedayat, Sloane & Stufken 1999, chapter 9.
 ///
 /// ```
 /// let a = trysquare::construct::field::large_and_small(2, 3, 2)?;

@@ -27,6 +27,8 @@
 //! the base-q digits of i, *first coordinate least significant*. **Levels** of a factor with basis
 //! `b_1, …, b_e`: `Σ_j q^(j−1) · <v, b_j>`, elements of GF(q) being numbered as on
 //! [`Field`].
+//!
+//! Numbers of theorems, sections and chapters in the references are given from memory.
 
 mod addelman_kempthorne;
 mod affine_points;

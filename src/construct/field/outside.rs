@@ -120,6 +120,12 @@ fn duals_of_golay_codes() {
     dual_has_strength(3, &cyclic(3, 11, &ternary, true), 6, 6);
 }
 
+#[test]
+#[ignore = "346104 sets of seven factors in 4096 runs: about 20 s of one core"]
+fn dual_of_the_extended_binary_golay_code_counted_in_full() {
+    dual_has_strength(2, &cyclic(2, 23, &[1, 0, 1, 0, 1, 1, 1, 0, 0, 0, 1, 1], true), 8, 8);
+}
+
 /// MacWilliams & Sloane 1977, chapter 1: Hamming codes have distance 3 over every field, the extended
 /// binary ones 4; their duals are the arrays of Rao and of the affine points.
 #[test]

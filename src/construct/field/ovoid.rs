@@ -28,7 +28,7 @@ const NAME: &str = "ovoid";
 /// O(q^6), the number of cells.
 ///
 /// # Reference
-/// Bose 1947 (odd q), Qvist 1952 (even q); Hedayat, Sloane & Stufken 1999, section 5.9.
+/// Bose 1947 (odd q), Qvist 1952 (even q); Hedayat, Sloane & Stufken 1999, chapter 5.
 ///
 /// ```
 /// let a = trysquare::construct::field::ovoid(3)?;

@@ -115,9 +115,18 @@ fn ovoids() {
         let a = ovoid(q).unwrap();
         check(&a, pow(q, 4), &[(q as usize, pow(q, 2) + 1)], 3);
     }
-    // Larger fields by linear algebra alone.
-    for q in [7, 8, 9] {
-        let quadric = ovoid::elliptic_quadric(&Field::new(q).unwrap());
+    // Larger fields by linear algebra alone, and the stated equation.
+    for q in [2, 3, 4, 7, 8, 9] {
+        let f = Field::new(q).unwrap();
+        let quadric = ovoid::elliptic_quadric(&f);
+        let fits = |b: u16, c: u16| {
+            quadric.iter().all(|p| {
+                let [s, t, x, y] = p[..] else { return false };
+                let cross = f.add(f.mul(b, f.mul(x, y)), f.mul(c, f.mul(y, y)));
+                f.add(f.mul(s, t), f.add(f.mul(x, x), cross)) == 0
+            })
+        };
+        assert!(f.elements().any(|b| f.elements().any(|c| fits(b, c))), "q={q}");
         assert_eq!(quadric.len(), pow(q, 2) + 1);
         assert!(points_strength(q, &quadric, 3).unwrap());
     }
