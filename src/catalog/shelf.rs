@@ -13,7 +13,7 @@ use crate::recipe::Recipe;
 
 /// Up to this number of runs the shelf is closed under all compositions; above it, families,
 /// products and stored arrays stand on it.
-pub const CLOSED: u64 = 128;
+pub const CLOSED: u64 = 144;
 
 /// No more than this many splittings of the parents at one number of runs are used in
 /// compositions (more do not occur up to [`CLOSED`] runs).

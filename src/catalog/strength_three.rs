@@ -41,13 +41,15 @@ fn geometry(n: u32, candidates: &mut Candidates<'_>) {
                 move || Arc::new(Recipe::Ovoid { q }),
             );
         }
-        if (3..=q + 1).contains(&e)
-            && let Ok(large) = u16::try_from(q.pow(e - 2))
-        {
+        for k in 2..e {
+            let Ok(large) = u16::try_from(q.pow(e - k)) else { continue };
+            if u64::from(e) > (u64::from(q).pow(k) - 1) / u64::from(q - 1) {
+                continue;
+            }
             let mut bag = Bag::from_pairs([(level, e)]);
             bag.add(large, 1);
             candidates.offer(bag, "cosets of a code of dual distance 3", move || {
-                Arc::new(Recipe::CodeCosets { q, n: e })
+                Arc::new(Recipe::CodeCosets { q, n: e, k })
             });
         }
     }

@@ -4,11 +4,11 @@
 //! difference scheme) whose strength the cited theorem guarantees. Nothing is judged here: whoever
 //! hands an array out passes it through `verify` first.
 
+pub mod compose;
+pub mod field;
 pub mod hadamard;
 pub mod scheme;
-pub mod compose;
 pub mod strength3;
-pub mod field;
 #[cfg(test)]
 mod testing;
 

@@ -37,7 +37,7 @@ impl Recipe {
             Self::Ovoid { q } => field::ovoid(*q)?,
             Self::AddelmanKempthorne { q, n } => field::addelman_kempthorne(*q, *n)?,
             Self::TwoSubspaces { m, d } => field::two_subspaces(*m, *d)?,
-            Self::CodeCosets { q, n } => field::code_cosets(*q, *n, 2)?,
+            Self::CodeCosets { q, n, k } => field::code_cosets(*q, *n, *k)?,
             Self::Hadamard { matrix } => matrix.build()?.to_array()?,
             Self::Developed { scheme } => scheme::developed_with_rows(&scheme.build()?)?,
             Self::KroneckerSum { of, schemes, beside } => {

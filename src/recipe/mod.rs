@@ -98,12 +98,14 @@ pub enum Recipe {
         /// d.
         d: u32,
     },
-    /// One q^(n−2)-level and n q-level factors in q^n runs, strength 3: the cosets of a code.
+    /// One q^(n−k)-level and n q-level factors in q^n runs, strength 3: the cosets of a code.
     CodeCosets {
         /// The order of the field.
         q: u32,
-        /// The length of the code, 3 to q + 1.
+        /// The length of the code.
         n: u32,
+        /// Its dimension; n is at most (q^k − 1)/(q − 1).
+        k: u32,
     },
     /// N − 1 two-level factors from a Hadamard matrix of order N, strength 2.
     Hadamard {

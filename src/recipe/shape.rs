@@ -61,8 +61,8 @@ impl Recipe {
                 levels.extend(std::iter::repeat_n(2, small));
                 levels
             }
-            Self::CodeCosets { q, n } => {
-                let large = n.checked_sub(2).ok_or_else(|| wrong("length below 3"))?;
+            Self::CodeCosets { q, n, k } => {
+                let large = n.checked_sub(*k).ok_or_else(|| wrong("length below dimension"))?;
                 let mut levels = vec![power(*q, large)?];
                 levels.extend(std::iter::repeat_n(level(*q)?, *n as usize));
                 levels
@@ -143,7 +143,7 @@ impl Recipe {
             Self::FullFactorial { levels } => {
                 levels.iter().try_fold(1usize, |n, &s| times(n, usize::from(s)))
             }
-            Self::RaoHamming { q, n } | Self::Subspaces { q, n, .. } | Self::CodeCosets { q, n } => {
+            Self::RaoHamming { q, n } | Self::Subspaces { q, n, .. } | Self::CodeCosets { q, n, .. } => {
                 raise(*q, *n)
             }
             Self::LargeAndSmall { p, e, d } => raise(*p, e.checked_add(*d).ok_or_else(too_many)?),

@@ -24,7 +24,9 @@ impl fmt::Display for Recipe {
             Self::Ovoid { q } => write!(f, "elliptic quadric in PG(3,{q})"),
             Self::AddelmanKempthorne { q, n } => write!(f, "Addelman–Kempthorne over GF({q})^{n}"),
             Self::TwoSubspaces { m, d } => write!(f, "two subspaces and points in GF(2)^{}", 2 * m + d),
-            Self::CodeCosets { q, n } => write!(f, "cosets of a code of length {n} over GF({q})"),
+            Self::CodeCosets { q, n, k } => {
+                write!(f, "cosets of a code of length {n} and dimension {k} over GF({q})")
+            }
             Self::Hadamard { matrix } => write!(f, "{matrix}"),
             Self::Developed { scheme } => write!(f, "{scheme}, with its rows as a factor"),
             Self::KroneckerSum { of, schemes, beside } => {

@@ -106,6 +106,12 @@ impl Scheme {
         self.rows
     }
 
+    /// The entries, column by column.
+    #[must_use]
+    pub fn cells(&self) -> &[u16] {
+        &self.cells
+    }
+
     /// c, the number of columns.
     #[must_use]
     pub fn columns(&self) -> usize {
