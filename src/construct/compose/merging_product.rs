@@ -114,7 +114,7 @@ fn align(h: &Array, merged: &[usize], column: &[u16], m: usize) -> Result<Vec<us
         }
         classes[class].push(r);
     }
-    if classes.len() != m || classes.iter().any(|c| c.len() * m != order) {
+    if classes.len() != m || classes.iter().any(|c| c.len() != order / m) {
         return fail(format!(
             "the merged columns show {m} patterns, each {order}/{m} times, not {} patterns {:?} times",
             classes.len(),
@@ -216,6 +216,8 @@ mod tests {
         refused(merging_product(&two, &h, &b, 0, &[1, 1]), "named twice");
         refused(merging_product(&two, &h, &b, 0, &[0]), "as many merged columns as levels, 2, not 1");
         refused(merging_product(&two, &h, &b, 0, &[1, 2]), "not 4 patterns");
+        let skew = Array::new(4, vec![2; 4], [0, 0, 0, 0, 0, 0, 0, 1].repeat(2)).unwrap();
+        refused(merging_product(&two, &skew, &b, 0, &[0, 1]), "not 2 patterns [3, 1] times");
         let lopsided = Array::new(4, vec![2], vec![0, 0, 0, 1]).unwrap();
         refused(merging_product(&two, &h, &lopsided, 0, &[0, 1]), "every level of the factor of B");
         let five = Array::new(4, vec![5], vec![0, 1, 2, 3]).unwrap();

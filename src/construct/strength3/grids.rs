@@ -83,16 +83,17 @@ fn cell(u: &DifferenceBlock<'_>, v: &DifferenceBlock<'_>, k: usize, i: usize, j:
 }
 
 fn check_triples(u: &DifferenceBlock<'_>, v: &DifferenceBlock<'_>, m: usize) -> Result<(), ConstructError> {
-    let g = usize::from(u.order());
+    let pairs = u64::from(u.order()).pow(2);
     for k in 0..m {
         for (l, p) in (0..k).flat_map(|p| (0..p).map(move |l| (l, p))) {
             let mut counts = std::collections::HashMap::new();
             for (i, j) in (0..u.rows()).flat_map(|i| (0..v.rows()).map(move |j| (i, j))) {
                 let [x, y, z] = [k, l, p].map(|c| cell(u, v, c, i, j));
-                *counts.entry((u.group().sub(x, y), u.group().sub(x, z))).or_insert(0usize) += 1;
+                *counts.entry((u.group().sub(x, y), u.group().sub(x, z))).or_insert(0u64) += 1;
             }
-            let expected = times(NAME, u.rows(), v.rows())?;
-            if counts.len() != g * g || counts.values().any(|&n| n * g * g != expected) {
+            // At most 65,535 rows each.
+            let cells = u.rows() as u64 * v.rows() as u64;
+            if counts.values().any(|&n| n != cells / pairs) {
                 let needs = format!("the differences of columns {l}, {p} and {k} are even over the grid");
                 return Err(ConstructError::condition(NAME, needs));
             }
