@@ -58,7 +58,7 @@ pub fn group(a: &Array, columns: &[usize]) -> Result<Array, ConstructError> {
     if counts.len() != s {
         return fail(format!("as many patterns as a saturated array has runs, {s}, not {}", counts.len()));
     }
-    if counts.values().any(|&n| n * s != a.runs()) {
+    if counts.values().any(|&n| n != a.runs() / s) {
         return fail(format!("every pattern occurs {}/{s} times", a.runs()));
     }
     let patterns: Vec<&[u16]> = counts.keys().map(Vec::as_slice).collect();
@@ -74,13 +74,14 @@ pub fn group(a: &Array, columns: &[usize]) -> Result<Array, ConstructError> {
     Ok(Array::from_fn(a.runs(), levels, |i, j| if j == first { symbols[i] } else { a.get(i, kept[j]) })?)
 }
 
-/// Whether all pairs of symbols of two columns occur equally often.
+/// Whether all pairs of symbols of two columns occur equally often. (When all that occur do so as
+/// often as the whole quotient says, none is missing.)
 fn even(rows: &[&[u16]], (p, sp): (usize, usize), (q, sq): (usize, usize)) -> bool {
     let mut counts: BTreeMap<(u16, u16), usize> = BTreeMap::new();
     for row in rows {
         *counts.entry((row[p], row[q])).or_default() += 1;
     }
-    counts.len() == sp * sq && counts.values().all(|&n| n * sp * sq == rows.len())
+    counts.values().all(|&n| n == rows.len() / (sp * sq))
 }
 
 /// The levels of [`group`], from those of A and the grouped columns.
@@ -163,6 +164,10 @@ mod tests {
         let rows = [[0, 0, 0], [0, 0, 1], [1, 1, 0], [1, 1, 1]];
         let dependent = Array::from_rows(vec![2; 3], &rows).unwrap();
         refused(group(&dependent, &[0, 1, 2]), "factors 0 and 1 are orthogonal");
+        // All pairs occur in these five patterns, (1, 1) twice.
+        let rows = [[0, 0, 0, 0], [0, 1, 1, 1], [1, 0, 1, 1], [1, 1, 0, 1], [1, 1, 1, 0]];
+        let covering = Array::from_rows(vec![2; 4], &rows).unwrap();
+        refused(group(&covering, &[0, 1, 2, 3]), "factors 0 and 1 are orthogonal");
         let big = Array::new(2, vec![40_000; 2], vec![0, 1, 0, 1]).unwrap();
         refused(group(&big, &[0, 1]), "not 79999");
     }

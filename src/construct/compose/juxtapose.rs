@@ -102,7 +102,7 @@ mod tests {
 
     #[test]
     fn eight_and_twelve_runs_make_twenty() {
-        // 2·2^2 in 8 runs as 4·2^4 and 6·2^2 in 12: 10·2^2 in 20.
+        // 4·2^2 in 8 runs and 6·2^2 in 12: 10·2^2 in 20.
         let six = juxtapose(&[(&sylvester(2), Some(0)); 3]).unwrap();
         assert_eq!((six.runs(), six.levels()), (12, &[6, 2, 2][..]));
         let four = juxtapose(&[(&sylvester(2), Some(1)); 2]).unwrap();

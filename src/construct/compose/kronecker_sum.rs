@@ -1,7 +1,7 @@
 //! The generalised Kronecker sum of Wang & Wu.
 
 use super::block::{check_blocks, shapes};
-use super::{DifferenceBlock, times};
+use super::{DifferenceBlock, Levels, times};
 use crate::array::Array;
 use crate::construct::ConstructError;
 
@@ -71,12 +71,16 @@ pub fn kronecker_sum(
         .ok_or_else(|| ConstructError::condition(NAME, "at least one block or B"))?;
     check_blocks(NAME, a.levels(), blocks, rows)?;
     let runs = times(NAME, a.runs(), rows)?;
-    let levels = kronecker_sum_levels(a.levels(), &shapes(blocks), b.map_or(&[], Array::levels));
+    let levels = kronecker_sum_levels(a.levels(), &shapes(blocks), b.map_or(&[], Array::levels))?;
     let mut sources = Vec::with_capacity(levels.len());
     for (j, &s) in a.levels().iter().enumerate() {
         match blocks.iter().position(|d| d.order() == s) {
             Some(block) => {
-                sources.extend((0..blocks[block].columns()).map(|column| Source::Sum { a: j, block, column }))
+                sources.extend((0..blocks[block].columns()).map(|column| Source::Sum {
+                    a: j,
+                    block,
+                    column,
+                }));
             }
             None => sources.push(Source::Plain { a: j }),
         }
@@ -98,12 +102,17 @@ pub fn kronecker_sum(
 
 /// The levels of [`kronecker_sum`], from those of A, the (s_i, c_i) of the blocks, and those of B
 /// (empty when it is left out).
-#[must_use]
-pub fn kronecker_sum_levels(a: &[u16], blocks: &[(u16, usize)], b: &[u16]) -> Vec<u16> {
+///
+/// # Errors
+/// [`ConstructError::Condition`] when the factors are too many.
+pub fn kronecker_sum_levels(
+    a: &[u16],
+    blocks: &[(u16, usize)],
+    b: &[u16],
+) -> Result<Vec<u16>, ConstructError> {
     let width = |s: u16| blocks.iter().find(|&&(order, _)| order == s).map_or(1, |&(_, c)| c);
-    let mut levels: Vec<u16> = a.iter().flat_map(|&s| std::iter::repeat_n(s, width(s))).collect();
-    levels.extend_from_slice(b);
-    levels
+    let sums = a.iter().try_fold(Levels::new(NAME), |so_far, &s| so_far.repeat(s, Some(width(s))))?;
+    Ok(sums.all(b.iter().copied())?.done())
 }
 
 #[cfg(test)]
@@ -123,7 +132,7 @@ mod tests {
         assert_eq!((array.runs(), array.levels()), (48, &[2; 47][..]));
         assert!(has_strength(&array, 2));
         let without = kronecker_sum(&a, &[d], None).unwrap();
-        assert_eq!(without.levels(), kronecker_sum_levels(&[2; 3], &[(2, 12)], &[]));
+        assert_eq!(without.levels(), kronecker_sum_levels(&[2; 3], &[(2, 12)], &[]).unwrap());
         assert_eq!(without, array.select(&(0..36).collect::<Vec<_>>()).unwrap());
     }
 
@@ -136,7 +145,7 @@ mod tests {
         let b = full(&[3]);
         let array = kronecker_sum(&a, &[d], Some(&b)).unwrap();
         assert_eq!((array.runs(), array.levels()), (18, &[2, 3, 3, 3, 3][..]));
-        assert_eq!(array.levels(), kronecker_sum_levels(&[2, 3], &[(3, 3)], &[3]));
+        assert_eq!(array.levels(), kronecker_sum_levels(&[2, 3], &[(3, 3)], &[3]).unwrap());
         assert!(has_strength(&array, 2));
         assert_eq!(array.row(4), [0, 1, 2, 0, 1]); // i = 1: (0, 1); m = 1: 0 1 2
         let only_b = kronecker_sum(&a, &[], Some(&b)).unwrap();
@@ -168,5 +177,9 @@ mod tests {
         refused(kronecker_sum(&a, &[d], Some(&a)), "M = 4 rows, not 2");
         refused(kronecker_sum(&a, &[d, d], None), "two have order 2");
         refused(kronecker_sum(&a, &[d, e], None), "no 3-level factor");
+        for c in [usize::MAX, crate::mix::MAX_FACTORS] {
+            let error = kronecker_sum_levels(&[2, 2], &[(2, c)], &[]).unwrap_err();
+            assert!(error.to_string().contains("at most 16777216 factors"));
+        }
     }
 }

@@ -110,9 +110,11 @@ pub fn cartesian(a: &Array, b: &Array) -> Result<Array, ConstructError> {
 }
 
 /// The levels of [`cartesian`]: those of A, then those of B.
-#[must_use]
-pub fn cartesian_levels(a: &[u16], b: &[u16]) -> Vec<u16> {
-    [a, b].concat()
+///
+/// # Errors
+/// As [`level_product_levels`].
+pub fn cartesian_levels(a: &[u16], b: &[u16]) -> Result<Vec<u16>, ConstructError> {
+    level_product_levels(a, b, &[])
 }
 
 #[cfg(test)]
@@ -149,7 +151,7 @@ mod tests {
         assert_eq!(array.levels(), [6, 2, 2, 2, 2]);
         assert!(has_strength(&array, 5));
         let array = cartesian(&sylvester(2), &plane(3)).unwrap();
-        assert_eq!(array.levels(), cartesian_levels(&[2; 3], &[3; 4]));
+        assert_eq!(array.levels(), cartesian_levels(&[2; 3], &[3; 4]).unwrap());
         assert!(has_strength(&array, 2) && !has_strength(&array, 3));
     }
 

@@ -2,7 +2,7 @@
 
 use std::collections::HashMap;
 
-use super::{as_levels, has_column, has_columns, times};
+use super::{Levels, as_levels, has_column, has_columns, times};
 use crate::array::Array;
 use crate::construct::ConstructError;
 
@@ -114,7 +114,7 @@ fn align(h: &Array, merged: &[usize], column: &[u16], m: usize) -> Result<Vec<us
         }
         classes[class].push(r);
     }
-    if classes.len() != m || classes.iter().any(|c| c.len() * m != order) {
+    if classes.len() != m || classes.iter().any(|c| c.len() != order / m) {
         return fail(format!(
             "the merged columns show {m} patterns, each {order}/{m} times, not {} patterns {:?} times",
             classes.len(),
@@ -132,8 +132,8 @@ fn align(h: &Array, merged: &[usize], column: &[u16], m: usize) -> Result<Vec<us
 /// factor of B that grows.
 ///
 /// # Errors
-/// [`ConstructError::Condition`] when B has no such factor, its levels are more than M, or n times
-/// its levels is no number of levels.
+/// [`ConstructError::Condition`] when B has no such factor, its levels are more than M, n times its
+/// levels is no number of levels, or the factors are too many.
 pub fn merging_product_levels(
     n: usize,
     k: usize,
@@ -143,13 +143,13 @@ pub fn merging_product_levels(
 ) -> Result<Vec<u16>, ConstructError> {
     has_column(NAME, "B", b.len(), factor)?;
     let m = usize::from(b[factor]);
-    let twos = order.checked_sub(m).and_then(|kept| k.checked_mul(kept)).ok_or_else(|| {
-        ConstructError::condition(NAME, format!("at most M levels in the factor of B, not {m} > {order}"))
-    })?;
-    let mut levels = vec![2; twos];
-    levels.push(as_levels(NAME, n.checked_mul(m))?);
-    levels.extend(b.iter().enumerate().filter(|&(j, _)| j != factor).map(|(_, &s)| s));
-    Ok(levels)
+    let Some(kept) = order.checked_sub(m) else {
+        let needs = format!("at most M levels in the factor of B, not {m} > {order}");
+        return Err(ConstructError::condition(NAME, needs));
+    };
+    let grown = as_levels(NAME, n.checked_mul(m))?;
+    let others = b.iter().enumerate().filter(|&(j, _)| j != factor).map(|(_, &s)| s);
+    Ok(Levels::new(NAME).repeat(2, k.checked_mul(kept))?.all([grown])?.all(others)?.done())
 }
 
 #[cfg(test)]
@@ -216,11 +216,17 @@ mod tests {
         refused(merging_product(&two, &h, &b, 0, &[1, 1]), "named twice");
         refused(merging_product(&two, &h, &b, 0, &[0]), "as many merged columns as levels, 2, not 1");
         refused(merging_product(&two, &h, &b, 0, &[1, 2]), "not 4 patterns");
+        let skew = Array::new(4, vec![2; 4], [0, 0, 0, 0, 0, 0, 0, 1].repeat(2)).unwrap();
+        refused(merging_product(&two, &skew, &b, 0, &[0, 1]), "not 2 patterns [3, 1] times");
         let lopsided = Array::new(4, vec![2], vec![0, 0, 0, 1]).unwrap();
         refused(merging_product(&two, &h, &lopsided, 0, &[0, 1]), "every level of the factor of B");
         let five = Array::new(4, vec![5], vec![0, 1, 2, 3]).unwrap();
         refused(merging_product(&two, &h, &five, 0, &[0, 1]), "not 5 > 4");
         let tall = Array::new(32_768, vec![2], vec![0; 32_768]).unwrap();
         refused(merging_product(&tall, &h, &b, 0, &[0, 1]), "not 65536");
+        for order in [usize::MAX, 1 << 24] {
+            let error = merging_product_levels(4, 3, order, &[2], 0).unwrap_err();
+            assert!(error.to_string().contains("at most 16777216 factors"));
+        }
     }
 }

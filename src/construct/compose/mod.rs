@@ -41,6 +41,37 @@ pub use split::{split, split_levels};
 pub use zero_column_refinement::{zero_column_refinement, zero_column_refinement_levels};
 
 use super::ConstructError;
+use crate::mix::MAX_FACTORS;
+
+/// A list of levels that is being written, within the number of factors an array may have.
+pub(crate) struct Levels {
+    construction: &'static str,
+    levels: Vec<u16>,
+}
+
+impl Levels {
+    pub(crate) fn new(construction: &'static str) -> Self {
+        Self { construction, levels: Vec::new() }
+    }
+
+    /// `count` further factors of `s` levels; `None` stands for a number that overflowed.
+    pub(crate) fn repeat(mut self, s: u16, count: Option<usize>) -> Result<Self, ConstructError> {
+        let count = count.filter(|&k| k <= MAX_FACTORS - self.levels.len()).ok_or_else(|| {
+            ConstructError::condition(self.construction, format!("at most {MAX_FACTORS} factors"))
+        })?;
+        self.levels.extend(std::iter::repeat_n(s, count));
+        Ok(self)
+    }
+
+    /// One further factor for each of `levels`.
+    pub(crate) fn all(self, levels: impl IntoIterator<Item = u16>) -> Result<Self, ConstructError> {
+        levels.into_iter().try_fold(self, |so_far, s| so_far.repeat(s, Some(1)))
+    }
+
+    pub(crate) fn done(self) -> Vec<u16> {
+        self.levels
+    }
+}
 
 /// `n` as a number of levels; `None` stands for a number that overflowed.
 pub(crate) fn as_levels(construction: &'static str, n: Option<usize>) -> Result<u16, ConstructError> {

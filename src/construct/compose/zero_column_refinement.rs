@@ -1,7 +1,7 @@
 //! A Kronecker sum whose columns `A ⊕ 0` make way for one large factor.
 
 use super::block::{check_blocks, shapes};
-use super::{DifferenceBlock, as_levels, times};
+use super::{DifferenceBlock, Levels, as_levels, times};
 use crate::array::Array;
 use crate::construct::ConstructError;
 
@@ -82,7 +82,8 @@ pub fn zero_column_refinement(a: &Array, blocks: &[DifferenceBlock<'_>]) -> Resu
 /// blocks, and M.
 ///
 /// # Errors
-/// [`ConstructError::Condition`] when N1 or M is no number of levels.
+/// [`ConstructError::Condition`] when N1 or M is no number of levels, or the factors are too
+/// many.
 pub fn zero_column_refinement_levels(
     n1: usize,
     a: &[u16],
@@ -91,10 +92,8 @@ pub fn zero_column_refinement_levels(
 ) -> Result<Vec<u16>, ConstructError> {
     let width =
         |s: u16| blocks.iter().find(|&&(order, _)| order == s).map_or(0, |&(_, c)| c.saturating_sub(1));
-    let mut levels: Vec<u16> = a.iter().flat_map(|&s| std::iter::repeat_n(s, width(s))).collect();
-    levels.push(as_levels(NAME, Some(n1))?);
-    levels.push(as_levels(NAME, Some(m))?);
-    Ok(levels)
+    let sums = a.iter().try_fold(Levels::new(NAME), |so_far, &s| so_far.repeat(s, Some(width(s))))?;
+    Ok(sums.all([as_levels(NAME, Some(n1))?, as_levels(NAME, Some(m))?])?.done())
 }
 
 #[cfg(test)]
@@ -150,5 +149,7 @@ mod tests {
         refused(zero_column_refinement(&a, &[one_row]), "2 to 65535 levels, not 1");
         let tall = Array::new(65_536, vec![2], (0..65_536u32).map(|i| (i % 2) as u16).collect()).unwrap();
         refused(zero_column_refinement(&tall, &[d]), "2 to 65535 levels, not 65536");
+        let error = zero_column_refinement_levels(4, &[2, 2], &[(2, usize::MAX)], 2).unwrap_err();
+        assert!(error.to_string().contains("at most 16777216 factors"));
     }
 }

@@ -46,8 +46,11 @@ const CAP: [u16; 4] = [1, 2, 4, 7];
 /// O(s).
 ///
 /// # Reference
-/// Proved above. That 2^7 (2^5 for s = 3) is impossible is said in the project's notes on
-/// strength 3, from memory.
+/// Proved above. One two-level factor more is impossible, because an OA(8, 2^k, 2) with k ≥ 5 is k
+/// columns of the Hadamard matrix of order 8 \[from memory\]. With k = 7 every slice has seven
+/// dependent triples; 7s is odd, but triples cancel in pairs. With s = 3 and k = 5 every slice has
+/// two, {a,b,c} and {a,d,e}, so any two slices share one triple and each of three triples meets
+/// each other in one factor, the two covering all five: no three triples do that.
 ///
 /// ```
 /// use trysquare::construct::strength3::eight_runs_per_level;

@@ -3,7 +3,7 @@
 use super::all_two;
 use crate::array::Array;
 use crate::construct::ConstructError;
-use crate::construct::compose::times;
+use crate::construct::compose::{Levels, times};
 
 const NAME: &str = "one even-level factor";
 
@@ -55,14 +55,12 @@ pub fn even_level(s: u16, h: &Array) -> Result<Array, ConstructError> {
 /// The levels of [`even_level`], from s and the number k of factors of H.
 ///
 /// # Errors
-/// [`ConstructError::Condition`] when s is odd or zero.
+/// [`ConstructError::Condition`] when s is odd or zero, or the factors are too many.
 pub fn even_level_levels(s: u16, k: usize) -> Result<Vec<u16>, ConstructError> {
     if s < 2 || !s.is_multiple_of(2) {
         return Err(ConstructError::condition(NAME, format!("s is even and at least 2, not {s}")));
     }
-    let mut levels = vec![2; k + 1];
-    levels[0] = s;
-    Ok(levels)
+    Ok(Levels::new(NAME).all([s])?.repeat(2, Some(k))?.done())
 }
 
 #[cfg(test)]
@@ -89,5 +87,6 @@ mod tests {
             refused(even_level(s, &twelve()), &format!("s is even and at least 2, not {s}"));
         }
         refused(even_level(2, &plane(3)), "all levels of H are 2, not 3");
+        assert!(even_level_levels(2, 1 << 24).unwrap_err().to_string().contains("at most 16777216 factors"));
     }
 }

@@ -3,7 +3,7 @@
 use super::all_two;
 use crate::array::Array;
 use crate::construct::ConstructError;
-use crate::construct::compose::times;
+use crate::construct::compose::{Levels, times};
 
 const NAME: &str = "foldover";
 
@@ -43,16 +43,18 @@ const NAME: &str = "foldover";
 pub fn foldover(a: &Array) -> Result<Array, ConstructError> {
     all_two(NAME, "A", a.levels())?;
     let runs = times(NAME, a.runs(), 2)?;
-    Ok(Array::from_fn(runs, foldover_levels(a.factors()), |run, j| {
+    Ok(Array::from_fn(runs, foldover_levels(a.factors())?, |run, j| {
         let half = u16::from(run >= a.runs());
         if j == a.factors() { half } else { a.get(run % a.runs(), j) ^ half }
     })?)
 }
 
 /// The levels of [`foldover`], from the number k of factors of A.
-#[must_use]
-pub fn foldover_levels(k: usize) -> Vec<u16> {
-    vec![2; k + 1]
+///
+/// # Errors
+/// [`ConstructError::Condition`] when the factors are too many.
+pub fn foldover_levels(k: usize) -> Result<Vec<u16>, ConstructError> {
+    Ok(Levels::new(NAME).repeat(2, k.checked_add(1))?.done())
 }
 
 #[cfg(test)]
@@ -66,7 +68,7 @@ mod tests {
         for a in [sylvester(1), sylvester(2), sylvester(3), sylvester(4), twelve()] {
             let array = foldover(&a).unwrap();
             assert_eq!((array.runs(), array.factors()), (2 * a.runs(), a.factors() + 1));
-            assert_eq!(array.levels(), foldover_levels(a.factors()));
+            assert_eq!(array.levels(), foldover_levels(a.factors()).unwrap());
             assert!(has_strength(&array, 3));
             assert_eq!(derived(&array, a.factors(), 0).unwrap(), a);
         }
@@ -88,5 +90,8 @@ mod tests {
     #[test]
     fn refuses_other_levels() {
         refused(foldover(&full(&[2, 3])), "all levels of A are 2, not 3");
+        for k in [usize::MAX, 1 << 24] {
+            assert!(foldover_levels(k).unwrap_err().to_string().contains("at most 16777216 factors"));
+        }
     }
 }

@@ -4,7 +4,7 @@ use super::all_two;
 use crate::algebra::AbelianGroup;
 use crate::array::Array;
 use crate::construct::ConstructError;
-use crate::construct::compose::{DifferenceBlock, as_levels, times};
+use crate::construct::compose::{DifferenceBlock, Levels, as_levels, times};
 
 const NAME: &str = "grids";
 
@@ -83,16 +83,17 @@ fn cell(u: &DifferenceBlock<'_>, v: &DifferenceBlock<'_>, k: usize, i: usize, j:
 }
 
 fn check_triples(u: &DifferenceBlock<'_>, v: &DifferenceBlock<'_>, m: usize) -> Result<(), ConstructError> {
-    let g = usize::from(u.order());
+    let pairs = u64::from(u.order()).pow(2);
     for k in 0..m {
         for (l, p) in (0..k).flat_map(|p| (0..p).map(move |l| (l, p))) {
             let mut counts = std::collections::HashMap::new();
             for (i, j) in (0..u.rows()).flat_map(|i| (0..v.rows()).map(move |j| (i, j))) {
                 let [x, y, z] = [k, l, p].map(|c| cell(u, v, c, i, j));
-                *counts.entry((u.group().sub(x, y), u.group().sub(x, z))).or_insert(0usize) += 1;
+                *counts.entry((u.group().sub(x, y), u.group().sub(x, z))).or_insert(0u64) += 1;
             }
-            let expected = times(NAME, u.rows(), v.rows())?;
-            if counts.len() != g * g || counts.values().any(|&n| n * g * g != expected) {
+            // At most 65,535 rows each.
+            let cells = u.rows() as u64 * v.rows() as u64;
+            if counts.values().any(|&n| n != cells / pairs) {
                 let needs = format!("the differences of columns {l}, {p} and {k} are even over the grid");
                 return Err(ConstructError::condition(NAME, needs));
             }
@@ -105,11 +106,11 @@ fn check_triples(u: &DifferenceBlock<'_>, v: &DifferenceBlock<'_>, m: usize) -> 
 /// number m of columns.
 ///
 /// # Errors
-/// [`ConstructError::Condition`] when s1, s2 or g is no number of levels.
+/// [`ConstructError::Condition`] when s1, s2 or g is no number of levels, or the factors are too
+/// many.
 pub fn grids_levels(s1: usize, s2: usize, g: u16, m: usize) -> Result<Vec<u16>, ConstructError> {
-    let mut levels = vec![as_levels(NAME, Some(s1))?, as_levels(NAME, Some(s2))?];
-    levels.extend(std::iter::repeat_n(as_levels(NAME, Some(usize::from(g)))?, m));
-    Ok(levels)
+    let grid = Levels::new(NAME).all([as_levels(NAME, Some(s1))?, as_levels(NAME, Some(s2))?])?;
+    Ok(grid.repeat(as_levels(NAME, Some(usize::from(g)))?, Some(m))?.done())
 }
 
 /// Two factors as a grid beside two-level ones: [`grids`] over the group of order 2.
@@ -176,7 +177,9 @@ mod tests {
         match s {
             2 | 4 | 8 => sylvester_signs(s.ilog2()),
             12 => twelve_signs(),
-            _ if s % 2 == 0 => Array::from_fn(s, vec![2; 2], |i, j| u16::from(j == 1 && i < s / 2)).unwrap(),
+            _ if s.is_multiple_of(2) => {
+                Array::from_fn(s, vec![2; 2], |i, j| u16::from(j == 1 && i < s / 2)).unwrap()
+            }
             _ => Array::from_fn(s, vec![2], |_, _| 0).unwrap(),
         }
     }
@@ -233,6 +236,8 @@ mod tests {
         refused(grids(&u, &same), "the difference of columns 0 and 1 of v is even");
         refused(grids(&row, &u), "2 to 65535 levels, not 1");
         refused(grids(&u, &row), "2 to 65535 levels, not 1");
+        assert!(grids_levels(4, 4, 1, 1).unwrap_err().to_string().contains("65535 levels, not 1"));
+        assert!(grids_levels(4, 4, 2, 1 << 24).unwrap_err().to_string().contains("at most 16777216 factors"));
         refused(two_grids(&full(&[3]), &full(&[2])), "all levels of u are 2, not 3");
         refused(two_grids(&full(&[2]), &full(&[2, 4])), "all levels of v are 2, not 4");
     }

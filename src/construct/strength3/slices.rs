@@ -2,7 +2,7 @@
 
 use crate::array::Array;
 use crate::construct::ConstructError;
-use crate::construct::compose::as_levels;
+use crate::construct::compose::{as_levels, times};
 
 const NAME: &str = "slices";
 
@@ -48,7 +48,7 @@ pub fn slices(parts: &[&Array]) -> Result<Array, ConstructError> {
         return Err(ConstructError::condition(NAME, needs));
     }
     let levels = slices_levels(parts.len(), first.levels())?;
-    let runs = crate::construct::compose::times(NAME, parts.len(), first.runs())?;
+    let runs = times(NAME, parts.len(), first.runs())?;
     Ok(Array::from_fn(runs, levels, |run, j| {
         let (x, i) = (run / first.runs(), run % first.runs());
         // Below s, which is a number of levels.
