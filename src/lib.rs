@@ -4,5 +4,6 @@
 
 pub mod algebra;
 pub mod array;
+pub mod catalog;
 pub mod construct;
 pub mod mix;

@@ -1,0 +1,3 @@
+//! What can be had at N runs.
+
+pub mod seed;

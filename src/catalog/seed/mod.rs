@@ -1,0 +1,184 @@
+//! Seeds: the starters in the folder `catalog/`, embedded in the crate.
+//!
+//! The format is described in `catalog/FORMAT.md`. Nothing is read before it is asked for:
+//! [`schemes`] and [`hadamard_orders`] read the keys of the files, [`find`] one whole file.
+
+mod files;
+mod parse;
+
+use std::iter;
+
+use crate::construct::ConstructError;
+use crate::construct::hadamard::{Hadamard, goethals_seidel, turyn_type};
+use crate::construct::scheme::{Scheme, from_starter};
+
+pub use parse::{SeedError, SeedReason};
+
+use parse::{Parameters, Reader};
+
+/// One starter with its origin.
+#[derive(Clone, Debug, PartialEq, Eq)]
+pub struct Seed {
+    /// The name, also of the file: lower-case letters, digits and hyphens.
+    pub name: String,
+    /// What it is, with the data.
+    pub kind: SeedKind,
+    /// A publication, or how it was computed for this project.
+    pub source: String,
+    /// SHA-256 of the expanded object in the form that `catalog/FORMAT.md` states, in lower-case
+    /// hexadecimal digits.
+    pub digest: String,
+}
+
+/// What a seed is, with its data. Elements of groups are in the encoding of
+/// [`AbelianGroup`](crate::algebra::AbelianGroup), elements of fields in that of
+/// [`Field`](crate::algebra::Field).
+#[derive(Clone, Debug, PartialEq, Eq)]
+#[non_exhaustive]
+pub enum SeedKind {
+    /// A difference scheme.
+    DifferenceScheme {
+        /// The orders of the cyclic factors of the group.
+        group: Vec<u16>,
+        /// The columns, all of one length.
+        columns: Vec<Vec<u16>>,
+    },
+    /// First rows of four circulants for the array of Goethals and Seidel.
+    FourCirculants {
+        /// A group of units modulo the length; every row is constant on its orbits.
+        multipliers: Vec<u16>,
+        /// The rows A, B, C, D, entries ±1.
+        rows: [Vec<i8>; 4],
+    },
+    /// Turyn-type sequences X, Y, Z (length n) and W (length n − 1), entries ±1.
+    TurynType {
+        /// X, Y, Z, W.
+        sequences: [Vec<i8>; 4],
+    },
+    /// A vector V(m, t).
+    VVector {
+        /// The parameter m.
+        m: u16,
+        /// The parameter t; q = mt + 1 is a prime power.
+        t: u16,
+        /// a_1 … a_{m+1}, elements of GF(q).
+        vector: Vec<u16>,
+    },
+    /// Base columns of a quasi-difference matrix with λ = μ = 1.
+    QuasiDifference {
+        /// The orders of the cyclic factors of the group.
+        group: Vec<u16>,
+        /// u, the number of empty places in each row of the expanded matrix.
+        empty: u16,
+        /// For each row the row it is taken from.
+        permutation: Vec<u16>,
+        /// The base columns; `None` is an empty place.
+        columns: Vec<Vec<Option<u16>>>,
+    },
+}
+
+impl Seed {
+    /// The difference scheme this seed stands for, `None` when it is of another kind.
+    ///
+    /// # Errors
+    /// The inner result is that of [`from_starter`].
+    #[must_use]
+    pub fn scheme(&self) -> Option<Result<Scheme, ConstructError>> {
+        match &self.kind {
+            SeedKind::DifferenceScheme { group, columns } => Some(from_starter(group, columns)),
+            _ => None,
+        }
+    }
+
+    /// The Hadamard matrix this seed stands for, `None` when it is of another kind.
+    ///
+    /// # Errors
+    /// The inner result is that of [`goethals_seidel`] or [`turyn_type`].
+    #[must_use]
+    pub fn hadamard(&self) -> Option<Result<Hadamard, ConstructError>> {
+        match &self.kind {
+            SeedKind::FourCirculants { rows: [a, b, c, d], .. } => Some(goethals_seidel([a, b, c, d])),
+            SeedKind::TurynType { sequences: [x, y, z, w] } => Some(turyn_type(x, y, z, w)),
+            _ => None,
+        }
+    }
+}
+
+/// The parameters of a difference scheme on the shelf.
+#[derive(Clone, Copy, Debug, PartialEq, Eq)]
+pub struct SchemeEntry {
+    /// The name of the seed, for [`find`].
+    pub name: &'static str,
+    /// r, the number of rows.
+    pub rows: usize,
+    /// c, the number of columns.
+    pub columns: usize,
+    /// s, the order of the group.
+    pub order: u16,
+}
+
+/// The order of a Hadamard matrix on the shelf.
+#[derive(Clone, Copy, Debug, PartialEq, Eq)]
+pub struct HadamardEntry {
+    /// The name of the seed, for [`find`].
+    pub name: &'static str,
+    /// The order of the matrix.
+    pub order: usize,
+}
+
+/// The names of all seeds, ascending.
+pub fn names() -> impl ExactSizeIterator<Item = &'static str> {
+    files::FILES.iter().map(|&(name, _)| name)
+}
+
+/// The seed of that name.
+///
+/// ```
+/// use trysquare::catalog::seed::find;
+/// let seed = find("scheme-12-06-06").expect("on the shelf");
+/// let d = seed.scheme().expect("a difference scheme")?;
+/// assert_eq!((d.rows(), d.columns(), d.order()), (12, 6, 6));
+/// # Ok::<(), trysquare::construct::ConstructError>(())
+/// ```
+#[must_use]
+pub fn find(name: &str) -> Option<Seed> {
+    let at = files::FILES.binary_search_by(|&(n, _)| n.cmp(name)).ok()?;
+    Some(files::FILES[at].1.parse().expect("every embedded seed is read in a test"))
+}
+
+/// The difference schemes on the shelf, in the order of their names; only keys are read.
+pub fn schemes() -> impl Iterator<Item = SchemeEntry> {
+    parameters().filter_map(|(name, parameters)| match parameters {
+        Parameters::DifferenceScheme { rows, columns, group } => Some(SchemeEntry {
+            name,
+            rows: usize::from(rows),
+            columns: usize::from(columns),
+            order: group.iter().product(),
+        }),
+        _ => None,
+    })
+}
+
+/// The Hadamard matrices on the shelf, in the order of their names; only keys are read.
+pub fn hadamard_orders() -> impl Iterator<Item = HadamardEntry> {
+    parameters().filter_map(|(name, parameters)| {
+        let order = match parameters {
+            Parameters::FourCirculants { length, .. } => 4 * usize::from(length),
+            Parameters::TurynType { length } => 4 * (3 * usize::from(length) - 1),
+            _ => return None,
+        };
+        Some(HadamardEntry { name, order })
+    })
+}
+
+fn parameters() -> impl Iterator<Item = (&'static str, Parameters)> {
+    let mut files = files::FILES.iter();
+    iter::from_fn(move || {
+        let &(name, text) = files.next()?;
+        let (_, parameters) = Reader::new(text).opening().expect("every embedded seed is read in a test");
+        Some((name, parameters))
+    })
+}
+
+#[cfg(test)]
+mod tests;
