@@ -66,7 +66,7 @@ pub fn quadratic_forms<R: AsRef<[[u16; 3]]> + Sync>(q: u32, forms: &[R]) -> Resu
         }
     }
     let size = q as usize;
-    let order = k.checked_mul(size).unwrap_or(usize::MAX);
+    let order = k.saturating_mul(size);
     // q fits u16, and so do x and y.
     let scheme = Scheme::from_fn(q as u16, order, order, |_, i, j| {
         let (x, y) = ((i % size) as u16, (j % size) as u16);
