@@ -75,7 +75,7 @@ impl Recipe {
                 levels
             }
             Self::KroneckerSum { of, schemes, beside } => {
-                compose::kronecker_sum_levels(&sub(of)?, &block_shapes(schemes)?, &sub(beside)?)
+                compose::kronecker_sum_levels(&sub(of)?, &block_shapes(schemes)?, &sub(beside)?)?
             }
             Self::ZeroColumn { of, schemes } => {
                 let rows = schemes.first().map(|s| shape(s)).ok_or_else(|| wrong("no scheme"))??.rows;

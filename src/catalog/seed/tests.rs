@@ -1,10 +1,12 @@
-use std::collections::BTreeSet;
+use std::collections::{BTreeMap, BTreeSet};
 use std::fmt::Write;
 
+use proptest::prelude::*;
 use sha2::{Digest, Sha256};
 
 use super::*;
-use crate::algebra::{AbelianGroup, Field};
+use crate::algebra::{AbelianGroup, Field, prime_powers};
+use crate::construct::hadamard::{kronecker, miyamoto, paley_one, paley_two, sylvester};
 
 type Places = Vec<Vec<Option<u16>>>;
 
@@ -252,4 +254,69 @@ fn every_rule_of_the_format_refuses() {
         e.to_string(),
         "line 9: \"3\" is not a decimal number that fits here; numbers are separated by one blank"
     );
+}
+
+/// With the constructions that need only an order, the seeds reach every Hadamard order up to 400:
+/// each is built and judged.
+#[test]
+fn every_hadamard_order_up_to_400() {
+    let mut known: BTreeMap<usize, Hadamard> = BTreeMap::new();
+    for k in 0..=8 {
+        known.insert(1 << k, sylvester(k).unwrap());
+    }
+    for q in prime_powers(3, 399) {
+        let made = match q % 4 {
+            3 => paley_one(q),
+            1 if q < 200 => paley_two(q),
+            _ => continue,
+        };
+        let h = made.unwrap();
+        known.entry(h.order()).or_insert(h);
+    }
+    for entry in hadamard_orders().filter(|e| e.order <= 400) {
+        known.entry(entry.order).or_insert_with(|| find(entry.name).unwrap().hadamard().unwrap().unwrap());
+    }
+    for order in (4..=400).step_by(4) {
+        if !known.contains_key(&order) {
+            let split = known
+                .keys()
+                .copied()
+                .find(|&a| a > 1 && a < order && order.is_multiple_of(a) && known.contains_key(&(order / a)));
+            let product = match split {
+                Some(a) => kronecker(&known[&a], &known[&(order / a)]),
+                None => miyamoto(order as u32 / 4, known.get(&(order / 4 - 1)).expect("a known order")),
+            };
+            known.insert(order, product.unwrap_or_else(|e| panic!("order {order}: {e}")));
+        }
+        let h = &known[&order];
+        assert!(h.order() == order && h.is_hadamard(), "order {order}");
+    }
+}
+
+proptest! {
+    /// A seed with one character replaced or one line dropped is read or refused, and what is read is
+    /// built or refused: no panic.
+    #[test]
+    fn no_damaged_seed_panics(which in 0..files::FILES.len(), at in any::<prop::sample::Index>(), c in "[0-9 +:a-z\\n-]", drop: bool) {
+        let text = files::FILES[which].1;
+        let damaged: String = if drop {
+            let lines: Vec<&str> = text.split_inclusive('\n').collect();
+            let gone = at.index(lines.len());
+            lines.iter().enumerate().filter(|&(i, _)| i != gone).map(|(_, l)| *l).collect()
+        } else {
+            let place = at.index(text.len());
+            format!("{}{c}{}", &text[..place], &text[place + 1..])
+        };
+        match damaged.parse::<Seed>() {
+            Ok(seed) => {
+                let _ = (seed.scheme(), seed.hadamard());
+            }
+            Err(e) => prop_assert!(!e.to_string().is_empty()),
+        }
+    }
+
+    #[test]
+    fn no_text_panics_as_a_seed(text in "(name: [a-z ]{0,4}\n)?(kind: (v-vector|turyn-type)\n)?([a-z]{1,9}: [0-9 ]{0,6}\n){0,6}.*") {
+        prop_assert!(text.parse::<Seed>().is_err());
+    }
 }

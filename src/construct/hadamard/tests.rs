@@ -1,3 +1,5 @@
+use sha2::{Digest, Sha256};
+
 use super::*;
 use crate::algebra::prime_powers;
 use crate::array::Array;
@@ -209,4 +211,27 @@ fn plackett_and_burman_rows() {
             paley_one(runs as u32 - 1).unwrap().order()
         );
     }
+}
+
+/// Outside check: `scipy.linalg.hadamard` of SciPy is Sylvester's matrix, sign by sign; the fixture
+/// names the command that made it.
+#[test]
+fn sylvester_equals_scipy() {
+    let fixture = include_str!(concat!(env!("CARGO_MANIFEST_DIR"), "/tests/fixtures/scipy_sylvester.txt"));
+    let mut compared = 0;
+    for line in fixture.lines().filter(|l| !l.starts_with('#')) {
+        let (order, digest) = line.split_once(' ').unwrap();
+        let order: usize = order.parse().unwrap();
+        let h = sylvester(order.trailing_zeros()).unwrap();
+        let text: String = (0..order)
+            .flat_map(|i| {
+                let h = &h;
+                (0..order).map(move |j| if h.entry(i, j) > 0 { '+' } else { '-' }).chain(['\n'])
+            })
+            .collect();
+        let ours: String = Sha256::digest(text).iter().map(|byte| format!("{byte:02x}")).collect();
+        assert_eq!(ours, digest, "order {order}");
+        compared += 1;
+    }
+    assert_eq!(compared, 9);
 }

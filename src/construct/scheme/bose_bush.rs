@@ -22,7 +22,7 @@ use crate::construct::ConstructError;
 /// [`ConstructError::Condition`] when λ and s are not as above.
 ///
 /// Cost: λs² (λs + 1) group additions. Reference: Bose & Bush 1952, Annals of Mathematical
-/// Statistics 23, 508–524, theorem in section 5.
+/// Statistics 23, 508–524 (arrays of index λ from difference schemes).
 ///
 /// ```
 /// use trysquare::construct::scheme::bose_bush;

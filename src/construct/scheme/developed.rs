@@ -15,7 +15,7 @@ use crate::construct::ConstructError;
 /// [`ConstructError::Array`] when the result does not fit into memory.
 ///
 /// Cost: r·s·c group additions. Reference: Bose & Bush 1952, Annals of Mathematical Statistics 23,
-/// 508–524, section 5.
+/// 508–524 (difference schemes).
 ///
 /// ```
 /// use trysquare::construct::scheme::{developed, masuyama};
@@ -41,7 +41,7 @@ pub fn developed(scheme: &Scheme) -> Result<Array, ConstructError> {
 /// does not fit into memory.
 ///
 /// Cost: r·s·c group additions. Reference: Bose & Bush 1952, Annals of Mathematical Statistics 23,
-/// 508–524, section 5.
+/// 508–524 (difference schemes).
 ///
 /// ```
 /// use trysquare::construct::scheme::{developed_with_rows, masuyama};

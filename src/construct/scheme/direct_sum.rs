@@ -20,8 +20,8 @@ use crate::construct::ConstructError;
 /// [`ConstructError::Condition`] when the group is too large, [`ConstructError::Array`] when the
 /// result does not fit into memory.
 ///
-/// Cost: one addition per entry. Reference: Buratti 1998, Designs, Codes and Cryptography 14,
-/// 187–203 (products of difference matrices; from memory).
+/// Cost: one addition per entry. Reference: Buratti 1998, Journal of Combinatorial Designs 6, 165–182
+/// (products of difference matrices; from memory).
 ///
 /// ```
 /// use trysquare::construct::scheme::{direct_sum, field_table};

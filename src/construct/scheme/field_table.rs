@@ -22,7 +22,7 @@ use crate::construct::ConstructError;
 /// [`ConstructError::Condition`] when b is out of range.
 ///
 /// Cost: p^{2a} field multiplications. Reference: Bose & Bush 1952, Annals of Mathematical
-/// Statistics 23, 508–524, section 5.
+/// Statistics 23, 508–524 (difference schemes).
 ///
 /// ```
 /// use trysquare::construct::scheme::field_table;

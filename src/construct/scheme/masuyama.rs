@@ -1,6 +1,6 @@
 //! Masuyama's schemes with twice as many rows as group elements.
 
-use super::{Scheme, field_table};
+use super::{Scheme, field_table, quadratic_forms};
 use crate::algebra::Field;
 use crate::construct::ConstructError;
 
@@ -14,9 +14,7 @@ use crate::construct::ConstructError;
 /// (1, x), (0, y):  nx² + xy                       (1, x), (1, y):  nxy + (1 − n)y²/4
 /// ```
 ///
-/// normalised afterwards. Within one v the difference of two columns is linear in x. Between
-/// v = 0 and v = 1 it is, over u = 0 and u = 1, a quadratic polynomial with leading coefficient 1
-/// and n and the same value at its vertex, so together the two take every value twice.
+/// put together by [`quadratic_forms`].
 ///
 /// All of these must hold:
 /// * q is a prime power,
@@ -46,15 +44,6 @@ pub fn masuyama(q: u32) -> Result<Scheme, ConstructError> {
     let invert = |a: u16| field.inv(a).expect("not zero in odd characteristic");
     let two = field.add(1, 1);
     let quarter = invert(field.mul(two, two));
-    let beta = [[field.mul(quarter, field.sub(1, invert(n))), 0], [0, field.mul(quarter, field.sub(1, n))]];
-    let alpha = [[1, 0], [n, 0]];
-    let gamma = [[1, 1], [1, n]];
-    let size = q as usize;
-    let scheme = Scheme::from_fn(q as u16, 2 * size, 2 * size, |_, i, j| {
-        let (u, x, v, y) = (i / size, (i % size) as u16, j / size, (j % size) as u16);
-        let term = |coefficient, a, b| field.mul(coefficient, field.mul(a, b));
-        let mixed = field.add(term(alpha[u][v], x, x), term(gamma[u][v], x, y));
-        field.add(mixed, term(beta[u][v], y, y))
-    })?;
-    Ok(scheme.normalised())
+    let beta = |c: u16| field.mul(quarter, field.sub(1, c));
+    quadratic_forms(q, &[[[1, 1, beta(invert(n))], [0, 1, 0]], [[n, 1, 0], [0, n, beta(n)]]])
 }

@@ -9,19 +9,22 @@
 //! | --- | --- | --- |
 //! | p^a, s = p^b, a ≥ b | r | [`field_table`]: linear, so the developed array is linear as well |
 //! | 2s, s a prime power | r | [`masuyama`] (s even: the field table) |
+//! | 4s, s even or an odd prime power from 5 to 31 | r | [`dawson_de_launey`] |
+//! | ks, s an odd prime power | r | [`quadratic_forms`] with k × k forms that somebody found |
 //! | a Hadamard order, s = 2 | r | [`from_hadamard`] |
 //! | r1·r2, both over the group | c1·c2 | [`kronecker_sum`], also with [`zero_column`] (c2 = 1) for every multiple of r1 |
 //! | a scheme over a group of which s is a quotient | c | [`image`] |
 //! | r1·r2, s = s1·s2 | min(c1, c2) | [`direct_sum`], the only one here for an s that is no prime power |
 //! | anything else | c | [`from_starter`] with columns that somebody found |
 //!
-//! No column number exceeds r (Jungnickel 1979), so the first three cannot be beaten; among the
+//! No column number exceeds r (Jungnickel 1979), so the first five cannot be beaten; among the
 //! rest take the one with the most columns. The data for the last are arguments; those known to
 //! the project lie in the folder `catalog/`.
 //!
 //! [`bose_bush`] is the array OA(λs², s^{λs+1}, 2) that a square scheme over a field gives at once.
 
 mod bose_bush;
+mod dawson_de_launey;
 mod developed;
 mod difference;
 mod direct_sum;
@@ -32,9 +35,11 @@ mod group;
 mod image;
 mod kronecker_sum;
 mod masuyama;
+mod quadratic_forms;
 mod zero_column;
 
 pub use bose_bush::bose_bush;
+pub use dawson_de_launey::dawson_de_launey;
 pub use developed::{developed, developed_with_rows};
 pub use difference::Scheme;
 pub use direct_sum::direct_sum;
@@ -45,6 +50,7 @@ pub use group::canonical_group;
 pub use image::image;
 pub use kronecker_sum::kronecker_sum;
 pub use masuyama::masuyama;
+pub use quadratic_forms::quadratic_forms;
 pub use zero_column::zero_column;
 
 #[cfg(test)]

@@ -40,7 +40,7 @@ fn check_arrays(d: &Scheme) {
 
 #[test]
 fn field_tables() {
-    for q in prime_powers(2, 81) {
+    for q in prime_powers(2, 64) {
         let (p, a) = prime_power(q).unwrap();
         for b in 1..=a {
             let d = field_table(p as u16, a, b).unwrap();
@@ -56,7 +56,7 @@ fn field_tables() {
 
 #[test]
 fn masuyama_for_every_small_field() {
-    for q in prime_powers(2, 53) {
+    for q in prime_powers(2, 32) {
         let d = masuyama(q).unwrap();
         check(&d, (2 * q as usize, 2 * q as usize, q as u16));
         assert_eq!(d, d.normalised());
@@ -231,4 +231,66 @@ fn checked_doors_refuse_what_breaks_a_rule() {
         }
     }
     assert_eq!(Scheme::new(3, &columns).unwrap(), d);
+}
+
+#[test]
+fn dawson_and_de_launey_for_every_field_admitted() {
+    for q in prime_powers(2, 33) {
+        match dawson_de_launey(q) {
+            Ok(d) => {
+                let shape = (4 * q as usize, 4 * q as usize, q as u16);
+                assert_eq!((d.rows(), d.columns(), d.order()), shape);
+                assert!(d.is_difference_scheme() && d == d.normalised());
+                if q <= 9 {
+                    check(&d, shape);
+                }
+            }
+            Err(_) => assert_eq!(q, 3),
+        }
+    }
+    for q in [0, 1, 6, 37, 16_384, 65_521] {
+        assert!(dawson_de_launey(q).is_err(), "{q}");
+    }
+}
+
+/// All 2 × 2 squares of forms over GF(3) with α_u1 = 0 and γ_00 = γ_10 = γ_01 = 1, β_u1 = 0 for u = 0:
+/// accepted exactly when the table of values is a difference scheme.
+#[test]
+fn quadratic_forms_accept_what_is_a_scheme() {
+    let value = |f: [u16; 3], x: u16, y: u16| (f[0] * x * x + f[1] * x * y + f[2] * y * y) % 3;
+    let mut accepted = 0;
+    for code in 0..3u16.pow(6) {
+        let digit = |k: u32| code / 3u16.pow(k) % 3;
+        let forms = [
+            [[digit(0), 1, digit(1)], [0, 1, 0]],
+            [[digit(2), 1, digit(3)], [0, 1 + digit(4) % 2, digit(5)]],
+        ];
+        let columns: Vec<Vec<u16>> = (0..6u16)
+            .map(|j| {
+                (0..6u16)
+                    .map(|i| value(forms[usize::from(i / 3)][usize::from(j / 3)], i % 3, j % 3))
+                    .collect()
+            })
+            .collect();
+        let result = quadratic_forms(3, &forms);
+        assert_eq!(result.is_ok(), Scheme::new(3, &columns).is_ok(), "{forms:?}");
+        accepted += usize::from(result.is_ok());
+    }
+    assert!(accepted > 0);
+}
+
+#[test]
+fn quadratic_forms_refuse_what_breaks_a_rule() {
+    let good = [[[1, 1, 2], [0, 1, 0]], [[2, 1, 0], [0, 2, 2]]];
+    let reason = |q, forms: &[[[u16; 3]; 2]]| quadratic_forms(q, forms).unwrap_err().to_string();
+    assert!(quadratic_forms(3, &good).is_ok());
+    assert!(reason(4, &good).contains("odd"));
+    assert!(reason(6, &good).contains("no field"));
+    assert!(reason(3, &good[..1]).contains("square"));
+    assert!(reason(3, &[]).contains("square"));
+    assert!(reason(3, &[good[0], [[2, 0, 0], [0, 2, 2]]]).contains("form (1, 0)"));
+    assert!(reason(3, &[good[0], [[2, 1, 3], [0, 2, 2]]]).contains("form (1, 0)"));
+    assert!(reason(3, &[good[0], [[0, 1, 0], [0, 2, 2]]]).contains("columns 0 and 1"));
+    assert!(reason(3, &[good[0], good[0]]).contains("columns 0 and 1"));
+    check(&quadratic_forms(5, &[[[3, 2, 4]]]).unwrap(), (5, 5, 5));
 }
