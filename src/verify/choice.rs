@@ -61,7 +61,7 @@ pub(super) fn investigate(array: &Array, required: usize, thorough: bool) -> Res
     let ceiling = strength_ceiling(array);
     let limit = ceiling.min(required.max(3).saturating_add(1));
     let must = required.min(ceiling);
-    let counting_cost = (1..=must).fold(0u128, |sum, t| sum.saturating_add(counting_cost(array, t)));
+    let counting_cost = counting_cost_to(array, must);
     let degree = pattern_length(limit, array.factors());
     let by_distance = thorough || distance::cost(array, degree) <= counting_cost.max(AFFORDABLE);
     let counted = (thorough || !by_distance).then(|| count(array, must, limit));
@@ -102,8 +102,20 @@ fn count(array: &Array, must: usize, limit: usize) -> (usize, Option<Witness>) {
     (limit, None)
 }
 
+/// Whether both engines can judge strength `required` without anybody waiting long.
+pub(super) fn both_affordable(array: &Array, required: usize) -> bool {
+    let degree = pattern_length(required.max(3).saturating_add(1), array.factors());
+    counting_cost_to(array, required.min(strength_ceiling(array))) <= AFFORDABLE
+        && distance::cost(array, degree) <= AFFORDABLE
+}
+
+/// An estimate of the word operations of counting all sets of up to `top` columns.
+fn counting_cost_to(array: &Array, top: usize) -> u128 {
+    (1..=top).fold(0, |sum, t| sum.saturating_add(counting_cost(array, t)))
+}
+
 /// An estimate of the word operations of counting all sets of `t` columns.
-pub(super) fn counting_cost(array: &Array, t: usize) -> u128 {
+fn counting_cost(array: &Array, t: usize) -> u128 {
     let runs = array.runs() as u128;
     let elementary = |weight: &dyn Fn(u16) -> u128| {
         let mut sums = vec![0u128; t + 1];
