@@ -50,7 +50,7 @@ pub struct Certificate {
     /// `"55/3"`), max(strength + 2, 6) entries but at most k; nothing when the distance engine
     /// was too expensive.
     #[serde(deserialize_with = "present")]
-    #[cfg_attr(feature = "schema", schemars(required))]
+    #[cfg_attr(feature = "schema", schemars(required, extend("type" = ["array", "null"])))]
     pub word_length_pattern: Option<Vec<String>>,
     /// The digest of the array, see [`digest::sha256`].
     pub sha256: String,

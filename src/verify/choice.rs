@@ -61,7 +61,7 @@ pub(super) fn investigate(array: &Array, required: usize, thorough: bool) -> Res
     let ceiling = strength_ceiling(array);
     let limit = ceiling.min(required.max(3).saturating_add(1));
     let must = required.min(ceiling);
-    let counting_cost = (1..=must).fold(0u128, |sum, t| sum.saturating_add(counting_cost(array, t)));
+    let counting_cost = counting_cost_to(array, must);
     let degree = pattern_length(limit, array.factors());
     let by_distance = thorough || distance::cost(array, degree) <= counting_cost.max(AFFORDABLE);
     let counted = (thorough || !by_distance).then(|| count(array, must, limit));
@@ -102,8 +102,56 @@ fn count(array: &Array, must: usize, limit: usize) -> (usize, Option<Witness>) {
     (limit, None)
 }
 
+/// The witness that strength `t` fails, as [`counting::find_violation`] gives it. Needs strength
+/// t − 1. Where counting every set would take long, distances say where the first one begins.
+pub(super) fn find_witness(array: &Array, t: usize) -> Option<Witness> {
+    let slices = counting::Slices::new(array);
+    let evaluations = u128::from(array.factors().ilog2()) + 2;
+    let narrowing = distance::cost(array, t).saturating_mul(evaluations);
+    if counting_cost(array, t) <= narrowing.max(AFFORDABLE) {
+        return slices.violation(t);
+    }
+    slices.violation_beginning(first_uneven_column(array, t), t)
+}
+
+/// The column with which the lexicographically first uneven set of `t` columns begins.
+///
+/// Given strength t − 1, B_t is a sum over the sets of t columns, positive exactly for the uneven
+/// ones. So leaving out the columns 0..=c makes B_t smaller as soon as an uneven set begins
+/// with one of them: the first such c is found by bisection.
+fn first_uneven_column(array: &Array, t: usize) -> usize {
+    let numerator = |from: usize| {
+        let columns: Vec<usize> = (from..array.factors()).collect();
+        let rest = array.select(&columns).ok()?;
+        distance::dual_distribution(&rest, t).numerators().get(t).cloned()
+    };
+    let all = numerator(0);
+    let (mut low, mut high) = (0, array.factors() - t);
+    while low < high {
+        let middle = low + (high - low) / 2;
+        if numerator(middle + 1) == all {
+            low = middle + 1;
+        } else {
+            high = middle;
+        }
+    }
+    low
+}
+
+/// Whether both engines can judge strength `required` without anybody waiting long.
+pub(super) fn both_affordable(array: &Array, required: usize) -> bool {
+    let degree = pattern_length(required.max(3).saturating_add(1), array.factors());
+    counting_cost_to(array, required.min(strength_ceiling(array))) <= AFFORDABLE
+        && distance::cost(array, degree) <= AFFORDABLE
+}
+
+/// An estimate of the word operations of counting all sets of up to `top` columns.
+fn counting_cost_to(array: &Array, top: usize) -> u128 {
+    (1..=top).fold(0, |sum, t| sum.saturating_add(counting_cost(array, t)))
+}
+
 /// An estimate of the word operations of counting all sets of `t` columns.
-pub(super) fn counting_cost(array: &Array, t: usize) -> u128 {
+fn counting_cost(array: &Array, t: usize) -> u128 {
     let runs = array.runs() as u128;
     let elementary = |weight: &dyn Fn(u16) -> u128| {
         let mut sums = vec![0u128; t + 1];
@@ -121,4 +169,57 @@ pub(super) fn counting_cost(array: &Array, t: usize) -> u128 {
     }
     let by_slices = elementary(&|s| u128::from(s - 1)).saturating_mul(runs.div_ceil(64) + 2);
     by_histogram.min(by_slices)
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+
+    /// The runs are the vectors of GF(2)^6, the columns these functionals.
+    fn parities(functionals: &[u32]) -> Array {
+        let symbol = |i: usize, j: usize| ((i as u32 & functionals[j]).count_ones() % 2) as u16;
+        Array::from_fn(64, vec![2; functionals.len()], symbol).unwrap()
+    }
+
+    #[test]
+    fn distances_say_where_the_first_uneven_set_begins() {
+        let cases: [(&[u32], usize, usize); 6] = [
+            (&[1, 2, 3, 4, 8, 12, 16], 3, 0),
+            (&[1, 2, 4, 8, 16, 24], 3, 3),
+            (&[1, 2, 4, 8, 16, 28, 32], 4, 2),
+            (&[1, 2, 3, 4, 1], 2, 0),
+            (&[1, 2, 3, 4, 4], 2, 3),
+            (&[1, 2, 0, 4], 1, 2),
+        ];
+        for (functionals, t, first) in cases {
+            let array = parities(functionals);
+            assert_eq!(first_uneven_column(&array, t), first, "{functionals:?}");
+            let slices = counting::Slices::new(&array);
+            let witness = slices.violation(t).unwrap();
+            assert_eq!(witness.columns[0], first);
+            assert_eq!(slices.violation_beginning(first, t), Some(witness.clone()));
+            assert_eq!(find_witness(&array, t), Some(witness));
+        }
+    }
+
+    #[test]
+    fn the_ceiling_is_what_the_largest_levels_allow() {
+        let ceiling = |runs, levels: &[u16]| {
+            strength_ceiling(&Array::from_fn(runs, levels.to_vec(), |_, _| 0).unwrap())
+        };
+        assert_eq!(ceiling(1, &[2, 2]), 0);
+        assert_eq!(ceiling(5, &[2, 3]), 1);
+        assert_eq!(ceiling(6, &[2, 3]), 2);
+        assert_eq!(ceiling(64, &[2; 9]), 6);
+        assert_eq!(ceiling(64, &[2; 4]), 4);
+    }
+
+    /// The cost of counting small cases beside their number of column sets.
+    #[test]
+    fn counting_costs_what_its_column_sets_cost() {
+        let array = parities(&[1, 2, 4, 8, 16, 32]);
+        assert_eq!(counting_cost(&array, 3), 20 * 3);
+        let wide = Array::from_fn(100, vec![10; 5], |_, _| 0).unwrap();
+        assert_eq!(counting_cost(&wide, 2), 10 * 200);
+    }
 }

@@ -6,8 +6,9 @@
 //! vanish when those of the combinations without a symbol 0 vanish: s − 1 indicators per column
 //! are enough.
 
-use std::cell::OnceCell;
 use std::collections::HashMap;
+use std::ops::Range;
+use std::sync::OnceLock;
 
 use bitvec::prelude::{BitVec, Lsb0};
 use rayon::prelude::*;
@@ -110,7 +111,7 @@ struct Prefix {
     /// The runs of every combination without a symbol 0, while these are few.
     slices: Option<Vec<Bits>>,
     /// The number of the combination in each run.
-    keys: OnceCell<Vec<usize>>,
+    keys: OnceLock<Vec<usize>>,
 }
 
 impl<'a> Slices<'a> {
@@ -137,37 +138,43 @@ impl<'a> Slices<'a> {
 
     /// The witness that strength `t` fails. Needs `1 <= t <= k` and strength t − 1.
     pub(super) fn violation(&self, t: usize) -> Option<Witness> {
-        let k = self.array.factors();
-        let empty = || Prefix {
-            columns: Vec::new(),
-            product: 1,
-            slices: Some(vec![BitVec::repeat(true, self.array.runs())]),
-            keys: OnceCell::new(),
+        self.first_uneven(&self.empty_prefix(), t).map(|columns| self.witness(columns))
+    }
+
+    /// As [`Slices::violation`], of the column sets that begin with `first`.
+    pub(super) fn violation_beginning(&self, first: usize, t: usize) -> Option<Witness> {
+        let empty = self.empty_prefix();
+        let columns = if t == 1 {
+            self.step(&empty, first, 1)?
+        } else {
+            self.first_uneven(&self.extend(&empty, first)?, t - 1)?
         };
-        let columns = (0..=k - t).into_par_iter().find_map_first(|first| {
-            if t == 1 {
-                return self.is_uneven(&empty(), first).then(|| vec![first]);
-            }
-            self.descend(&self.extend(&empty(), first)?, t - 1)
-        })?;
         Some(self.witness(columns))
     }
 
+    fn empty_prefix(&self) -> Prefix {
+        let all = BitVec::repeat(true, self.array.runs());
+        Prefix { columns: Vec::new(), product: 1, slices: Some(vec![all]), keys: OnceLock::new() }
+    }
+
     /// The first uneven column set that begins with `prefix` and has `missing` columns more.
-    fn descend(&self, prefix: &Prefix, missing: usize) -> Option<Vec<usize>> {
-        let next = prefix.columns.last().map_or(0, |&c| c + 1);
-        for column in next..=self.array.factors() - missing {
-            if missing == 1 {
-                if self.is_uneven(prefix, column) {
-                    return Some([&prefix.columns[..], &[column]].concat());
-                }
-            } else if let Some(found) =
-                self.extend(prefix, column).and_then(|longer| self.descend(&longer, missing - 1))
-            {
-                return Some(found);
-            }
+    fn first_uneven(&self, prefix: &Prefix, missing: usize) -> Option<Vec<usize>> {
+        let next = self.next_columns(prefix, missing).into_par_iter();
+        next.find_map_first(|column| self.step(prefix, column, missing))
+    }
+
+    /// As [`Slices::first_uneven`], where `column` comes next.
+    fn step(&self, prefix: &Prefix, column: usize, missing: usize) -> Option<Vec<usize>> {
+        if missing == 1 {
+            return self.is_uneven(prefix, column).then(|| [&prefix.columns[..], &[column]].concat());
         }
-        None
+        let longer = self.extend(prefix, column)?;
+        self.next_columns(&longer, missing - 1).find_map(|next| self.step(&longer, next, missing - 1))
+    }
+
+    fn next_columns(&self, prefix: &Prefix, missing: usize) -> Range<usize> {
+        let next = prefix.columns.last().map_or(0, |&c| c + 1);
+        next..(self.array.factors() + 1).saturating_sub(missing)
     }
 
     /// `None` only when the product of levels is beyond `usize`, which strength t − 1 excludes.
@@ -183,7 +190,7 @@ impl<'a> Slices<'a> {
                 let both = |a: &Bits| indicators.iter().map(|b| a.clone() & b).collect::<Vec<_>>();
                 slices.iter().flat_map(both).collect()
             }),
-            keys: OnceCell::new(),
+            keys: OnceLock::new(),
         })
     }
 
@@ -233,7 +240,7 @@ impl<'a> Slices<'a> {
         // An expectation that is no whole number is missed by every combination.
         if expected.denominator() == 1 {
             let (&last, first) = columns.split_last().expect("a witness has columns");
-            let prefix = Prefix { columns: first.to_vec(), product: 1, slices: None, keys: OnceCell::new() };
+            let prefix = Prefix { columns: first.to_vec(), product: 1, slices: None, keys: OnceLock::new() };
             let counts = self.histogram(&prefix, last, product as usize);
             let mut at = counts.iter().position(|&n| n != expected.numerator()).unwrap_or(0);
             for (symbol, &s) in combination.iter_mut().zip(&levels).rev() {

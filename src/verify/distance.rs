@@ -5,7 +5,7 @@
 //! programming bound for orthogonal arrays with mixed levels", 1996). It shares no step with
 //! [`counting`](super::counting), and its cost does not grow with t.
 
-use std::collections::HashMap;
+use std::collections::{BTreeSet, HashMap};
 use std::ops::{AddAssign, Mul, Neg};
 
 use num_bigint::BigInt;
@@ -92,18 +92,27 @@ pub(super) fn cost(array: &Array, degree: usize) -> u128 {
     let groups = groups(array.levels());
     let n = array.runs() as u128;
     let words: u128 = words(&groups).iter().map(|w| u128::from(w.planes) + w.parts.len() as u128).sum();
-    let distinct = groups.iter().fold(1u128, |p, g| p.saturating_mul(g.factors as u128 + 1));
+    let distinct = distances(&groups);
     let pairs = n.saturating_mul(n) / 2;
     let degree = degree.min(array.factors()) as u128 + 1;
     let polynomial = (groups.len() as u128).saturating_mul(degree.saturating_mul(degree));
     let products = distinct.min(pairs).saturating_mul(polynomial);
     // A hash map in place of a table costs about 30 word operations per pair.
-    let entry = if distinct > DENSE { 30 } else { 2 };
+    let entry = if fits_table(distinct, array.runs()) { 2 } else { 30 };
     pairs.saturating_mul(words + entry).saturating_add(products)
 }
 
-/// Up to so many distinct x are counted in a table.
-const DENSE: u128 = 1 << 18;
+/// The number of possible x.
+fn distances(groups: &[Group]) -> u128 {
+    groups.iter().fold(1, |product, g| product.saturating_mul(g.factors as u128 + 1))
+}
+
+/// Whether to count the x in a table: it must fit a cache, and clearing it must not cost more
+/// than filling it.
+fn fits_table(distances: u128, runs: usize) -> bool {
+    let pairs = (runs as u128).saturating_mul(runs as u128) / 2;
+    distances <= pairs.clamp(1 << 12, 1 << 18)
+}
 
 /// The factors with `levels` levels.
 #[derive(Clone, Copy)]
@@ -183,8 +192,8 @@ impl Packed {
     }
 
     fn tally(&self) -> Tally {
-        let size = self.groups.iter().fold(1u128, |p, g| p.saturating_mul(g.factors as u128 + 1));
-        let mut tally = if self.groups.len() == 1 || size <= DENSE {
+        let size = distances(&self.groups);
+        let mut tally = if fits_table(size, self.runs) {
             self.tally_in_table(size as usize)
         } else {
             self.tally_in_map()
@@ -298,15 +307,17 @@ fn sum_polynomials<T>(groups: &[Group], tally: &Tally, degree: usize) -> Vec<T>
 where
     T: Clone + From<u64> + Neg<Output = T> + for<'a> AddAssign<&'a T> + for<'a> Mul<&'a T, Output = T>,
 {
-    let tables: Vec<Vec<Vec<T>>> = groups.iter().map(|g| krawtchouk(*g, degree)).collect();
+    let met = |g: usize| tally.iter().map(|(x, _)| x[g]).collect::<BTreeSet<usize>>();
+    let tables: Vec<HashMap<usize, Vec<T>>> =
+        groups.iter().enumerate().map(|(g, group)| krawtchouk(*group, degree, &met(g))).collect();
     let zero = || vec![T::from(0); degree + 1];
     let mut sum = zero();
     for (x, pairs) in tally {
-        let mut product = tables[0][x[0]].clone();
+        let mut product = tables[0][&x[0]].clone();
         for (table, &x) in tables.iter().zip(x).skip(1) {
             let mut next = zero();
             for (i, p) in product.iter().enumerate() {
-                for (j, q) in table[x][..=degree - i].iter().enumerate() {
+                for (j, q) in table[&x][..=degree - i].iter().enumerate() {
                     next[i + j] += &(p.clone() * q);
                 }
             }
@@ -320,9 +331,9 @@ where
     sum
 }
 
-/// For every x the Krawtchouk values K_0(x), …, K_degree(x) of a group: the coefficients of
-/// (1 + (s − 1)z)^(k − x) (1 − z)^x.
-fn krawtchouk<T>(group: Group, degree: usize) -> Vec<Vec<T>>
+/// For every x that is met, the Krawtchouk values K_0(x), …, K_degree(x) of a group: the
+/// coefficients of (1 + (s − 1)z)^(k − x) (1 − z)^x.
+fn krawtchouk<T>(group: Group, degree: usize, met: &BTreeSet<usize>) -> HashMap<usize, Vec<T>>
 where
     T: Clone + From<u64> + Neg<Output = T> + for<'a> AddAssign<&'a T> + for<'a> Mul<&'a T, Output = T>,
 {
@@ -336,18 +347,22 @@ where
             row[j] += &carried;
         }
     }
-    let mut table = Vec::with_capacity(group.factors + 1);
-    for _ in 0..group.factors {
-        // Times (1 − z), divided as a power series by 1 + (s − 1)z.
-        let mut next = row.clone();
-        for j in 1..=degree {
-            next[j] += &-row[j - 1].clone();
-            let carried = next[j - 1].clone() * &minus_a;
-            next[j] += &carried;
+    let mut table = HashMap::new();
+    for x in 0..=met.last().copied().unwrap_or(0) {
+        if x > 0 {
+            // Times (1 − z), divided as a power series by 1 + (s − 1)z.
+            let mut next = row.clone();
+            for j in 1..=degree {
+                next[j] += &-row[j - 1].clone();
+                let carried = next[j - 1].clone() * &minus_a;
+                next[j] += &carried;
+            }
+            row = next;
         }
-        table.push(std::mem::replace(&mut row, next));
+        if met.contains(&x) {
+            table.insert(x, row.clone());
+        }
     }
-    table.push(row);
     table
 }
 

@@ -141,7 +141,7 @@ pub fn certify(array: &Array, demand: &Demand) -> Result<Judgement, JudgeError> 
             if !engines.contains(&Engine::Counting) {
                 engines.insert(0, Engine::Counting);
             }
-            counting::Slices::new(array).violation(findings.strength + 1)
+            choice::find_witness(array, findings.strength + 1)
         };
         let found = findings.witness.clone().or_else(search);
         let contradiction =

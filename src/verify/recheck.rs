@@ -5,7 +5,7 @@ use std::fmt;
 use serde::{Deserialize, Serialize};
 
 use super::certificate::{CERTIFICATE_VERSION, Certificate, StrengthClaim, index_of};
-use super::choice::{Engine, Findings, investigate, pattern_length, strength_ceiling};
+use super::choice::{Engine, Findings, both_affordable, investigate, pattern_length, strength_ceiling};
 use super::{JudgeError, digest, distance};
 use crate::array::Array;
 
@@ -98,8 +98,8 @@ impl RecheckReport {
 /// recipe, say nothing an array could confirm: they are listed as not checked, but the engines
 /// must be named once each, in order, and include the one that yields a stated pattern.
 ///
-/// Cost: that of [`certify`](super::certify) at the stated strength, and of
-/// [`distance::dual_distribution`] when a pattern is stated.
+/// Both engines judge when both are cheap. Cost: that of [`certify`](super::certify) at the stated
+/// strength, and of [`distance::dual_distribution`] when a pattern is stated.
 ///
 /// # Errors
 /// [`JudgeError::Disagreement`] when the engines contradict each other.
@@ -108,7 +108,7 @@ pub fn recheck(certificate: &Certificate, array: &Array) -> Result<RecheckReport
     // Beyond this no array is so strong, whatever is stated.
     let ceiling = strength_ceiling(array);
     let required = certificate.strength.min(ceiling).saturating_add(usize::from(exact));
-    let findings = investigate(array, required, false)?;
+    let findings = investigate(array, required, both_affordable(array, required))?;
     let strength_holds = if exact {
         findings.exact && findings.strength == certificate.strength
     } else {

@@ -47,6 +47,7 @@ fn every_sample_is_certified_and_rechecked() {
             let report = recheck(&judgement.certificate, &array).unwrap();
             assert!(report.holds(), "{name}: {report:?}");
             assert_eq!(report.not_checked, [Field::Engines, Field::EngineVersion, Field::Recipe]);
+            assert_eq!(report.engines, [Engine::Counting, Engine::Distance], "{name}");
         }
         if strength < array.factors() {
             let no = certify(&array, &Demand::strength(strength + 1)).unwrap();
@@ -56,6 +57,21 @@ fn every_sample_is_certified_and_rechecked() {
             assert!(recheck(&no.certificate, &array).unwrap().holds(), "{name}");
         }
     }
+}
+
+/// The 1,000 factors are points of PG(9, 2): strength 2, and three on a line are dependent.
+#[test]
+fn a_wide_array_is_judged_by_both_engines() {
+    let array = linear(2, 10, &points(2, 10)[..1000]);
+    let judgement = certify(&array, &Demand::strength(2).thorough()).unwrap();
+    let c = judgement.certificate;
+    assert_eq!(
+        (judgement.verdict, c.strength, c.strength_claim),
+        (Verdict::Orthogonal, 2, StrengthClaim::Exact)
+    );
+    assert_eq!(c.engines, [Engine::Counting, Engine::Distance]);
+    let no = certify(&array, &Demand::strength(3)).unwrap();
+    assert_eq!((no.verdict, no.witness.unwrap().columns), (Verdict::NotOrthogonal, vec![0, 1, 2]));
 }
 
 #[test]
@@ -111,7 +127,9 @@ fn the_schema_names_every_key() {
         required.sort();
         assert_eq!(keys(value), required, "{name}");
     }
-    assert_eq!(definitions["RatioForm"]["anyOf"].as_array().map(Vec::len), Some(2));
+    assert_eq!(definitions["Ratio"]["anyOf"].as_array().map(Vec::len), Some(2));
+    let pattern = &definitions["Certificate"]["properties"]["word_length_pattern"]["type"];
+    assert_eq!(pattern, &serde_json::json!(["array", "null"]));
 }
 
 /// A change to a certificate and the fields that a recheck has to name.
