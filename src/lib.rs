@@ -5,4 +5,5 @@
 pub mod algebra;
 pub mod array;
 pub mod construct;
+pub mod exchange;
 pub mod mix;
