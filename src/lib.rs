@@ -7,6 +7,7 @@ pub mod array;
 pub mod catalog;
 pub mod construct;
 pub mod floor;
+pub mod exchange;
 pub mod mix;
 pub mod recipe;
 pub mod seek;
