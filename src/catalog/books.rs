@@ -160,6 +160,9 @@ impl SchemeBook {
         {
             offer(SchemeRecipe::Masuyama { q: s });
         }
+        if prime_power(s).is_some_and(|(p, _)| p > 2) && (5..=31).contains(&s) && r == 4 * s {
+            offer(SchemeRecipe::DawsonDeLauney { q: s });
+        }
         if s == 2
             && let Some(matrix) = self.hadamard.get(r)
         {

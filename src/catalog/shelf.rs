@@ -55,6 +55,9 @@ impl Variant {
     }
 }
 
+/// Lists by (strength, runs).
+type Memo<T> = Mutex<HashMap<(u32, u64), Arc<Vec<T>>>>;
+
 /// What is on the shelf, worked out on demand and remembered.
 ///
 /// The answer for a number of runs depends on nothing but the version of the crate: the shelf may
@@ -65,8 +68,8 @@ pub struct Shelf {
     pub hadamard: Arc<HadamardBook>,
     /// The difference schemes.
     pub schemes: SchemeBook,
-    parents: Mutex<HashMap<(u32, u64), Arc<Vec<Arc<Parent>>>>>,
-    variants: Mutex<HashMap<(u32, u64), Arc<Vec<Variant>>>>,
+    parents: Memo<Arc<Parent>>,
+    variants: Memo<Variant>,
 }
 
 impl Default for Shelf {

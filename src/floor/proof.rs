@@ -270,7 +270,7 @@ pub fn rao_value(counts: &[(u16, u64)], strength: u32, aside: Option<u16>) -> Op
                 next[i + j] = next[i + j].checked_add(term)?;
             }
             if i < degree {
-                binomial = binomial.checked_mul(u64::from(k) - i as u64)? / (i as u64 + 1);
+                binomial = binomial.checked_mul(k - i as u64)? / (i as u64 + 1);
                 power = power.checked_mul(u64::from(s) - 1)?;
             }
         }
@@ -287,7 +287,7 @@ pub fn rao_value(counts: &[(u16, u64)], strength: u32, aside: Option<u16>) -> Op
 /// θ = (√(1 + 4s(s − 1 − b)) − (2s − 2b − 1)) / 2.
 #[must_use]
 pub fn bose_bush_allows(s: u16, k: u64, strength: u32, index: u64) -> bool {
-    let (s, k) = (u64::from(s), u64::from(k) - u64::from(strength == 3));
+    let (s, k) = (u64::from(s), k - u64::from(strength == 3));
     let Some(top) = index.checked_mul(s * s) else { return true };
     let limit = (top - 1) / (s - 1);
     let b = (index - 1) % (s - 1);

@@ -36,6 +36,11 @@ pub enum SchemeRecipe {
         /// q.
         q: u32,
     },
+    /// D(4q, 4q, q) (Dawson 1985, de Launey 1986).
+    DawsonDeLauney {
+        /// q.
+        q: u32,
+    },
     /// D(n, n, 2) from a Hadamard matrix.
     Hadamard {
         /// The matrix.
@@ -90,6 +95,10 @@ impl SchemeRecipe {
                 let r = q.checked_mul(2)?;
                 Shape { rows: r, columns: r, order: *q }
             }
+            Self::DawsonDeLauney { q } => {
+                let r = q.checked_mul(4)?;
+                Shape { rows: r, columns: r, order: *q }
+            }
             Self::Hadamard { matrix } => {
                 let n = matrix.order()?;
                 Shape { rows: n, columns: n, order: 2 }
@@ -130,6 +139,7 @@ impl SchemeRecipe {
             }
             Self::FieldTable { p, a, b } => scheme::field_table(super::build::level(*p)?, *a, *b)?,
             Self::Masuyama { q } => scheme::masuyama(*q)?,
+            Self::DawsonDeLauney { q } => scheme::dawson_de_launey(*q)?,
             Self::Hadamard { matrix } => scheme::from_hadamard(&matrix.build()?)?,
             Self::KroneckerSum { left, right } => scheme::kronecker_sum(&left.build()?, &right.build()?)?,
             Self::DirectSum { left, right } => scheme::direct_sum(&left.build()?, &right.build()?)?,
@@ -147,6 +157,7 @@ impl fmt::Display for SchemeRecipe {
             Self::Zero { .. } => write!(f, " of zeros"),
             Self::FieldTable { p, a, .. } => write!(f, " from the table of GF({p}^{a})"),
             Self::Masuyama { .. } => write!(f, " of Masuyama"),
+            Self::DawsonDeLauney { .. } => write!(f, " of Dawson and de Launey"),
             Self::Hadamard { matrix } => write!(f, " from {matrix}"),
             Self::KroneckerSum { left, right } => write!(f, " = {left} ⊕ {right}"),
             Self::DirectSum { left, right } => write!(f, " = {left} × {right}"),

@@ -102,7 +102,7 @@ impl Recipe {
                 arranged(sub(of)?, split, &splits, take.as_deref(), merge)?
             }
             Self::Group { of, columns } => compose::group_levels(&sub(of)?, &indices(columns))?,
-            Self::Foldover { of } => strength3::foldover_levels(sub(of)?.len()),
+            Self::Foldover { of } => strength3::foldover_levels(sub(of)?.len())?,
             Self::EvenLevel { s, matrix } => {
                 strength3::even_level_levels(level(*s)?, order(matrix.order())? - 1)?
             }
