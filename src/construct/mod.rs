@@ -12,10 +12,14 @@ pub mod strength3;
 #[cfg(test)]
 mod testing;
 
+mod blocks;
+
 use thiserror::Error;
 
 use crate::algebra::AlgebraError;
 use crate::array::ArrayError;
+
+pub use blocks::{block_product, block_types};
 
 /// Why a construction cannot be carried out.
 #[derive(Clone, Debug, PartialEq, Eq, Error)]

@@ -38,6 +38,7 @@ impl Recipe {
             Self::AddelmanKempthorne { q, n } => field::addelman_kempthorne(*q, *n)?,
             Self::TwoSubspaces { m, d } => field::two_subspaces(*m, *d)?,
             Self::CodeCosets { q, n, k } => field::code_cosets(*q, *n, *k)?,
+            Self::BlockTypes { vectors } => crate::construct::block_types(vectors)?,
             Self::Hadamard { matrix } => matrix.build()?.to_array()?,
             Self::Developed { scheme } => scheme::developed_with_rows(&scheme.build()?)?,
             Self::KroneckerSum { of, schemes, beside } => {

@@ -107,6 +107,12 @@ pub enum Recipe {
         /// Its dimension; n is at most (q^k − 1)/(q − 1).
         k: u32,
     },
+    /// Two-level factors and, last, one p-level factor in 4p runs from orthogonal vectors of block
+    /// types, strength 2 (DeCock & Stufken 2000).
+    BlockTypes {
+        /// The vectors, each of length p, over ±1, ±2, ±3.
+        vectors: Vec<Vec<i8>>,
+    },
     /// N − 1 two-level factors from a Hadamard matrix of order N, strength 2.
     Hadamard {
         /// The matrix.

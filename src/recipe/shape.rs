@@ -67,6 +67,12 @@ impl Recipe {
                 levels.extend(std::iter::repeat_n(level(*q)?, *n as usize));
                 levels
             }
+            Self::BlockTypes { vectors } => {
+                let blocks = vectors.first().map_or(0, Vec::len);
+                let mut levels = vec![2; vectors.len()];
+                levels.push(u16::try_from(blocks).map_err(|_| wrong("more than 65535 blocks"))?);
+                levels
+            }
             Self::Hadamard { matrix } => vec![2; order(matrix.order())? - 1],
             Self::Developed { scheme } => {
                 let Shape { rows, columns, order } = shape(scheme)?;
@@ -153,6 +159,7 @@ impl Recipe {
             Self::TwoSubspaces { m, d } => {
                 raise(2, m.checked_mul(2).and_then(|m| m.checked_add(*d)).ok_or_else(too_many)?)
             }
+            Self::BlockTypes { vectors } => times(4, vectors.first().map_or(0, Vec::len)),
             Self::Hadamard { matrix } => order(matrix.order()),
             Self::Developed { scheme } => {
                 let shape = shape(scheme)?;
@@ -190,6 +197,7 @@ impl Recipe {
             Self::RaoHamming { .. }
             | Self::LargeAndSmall { .. }
             | Self::AddelmanKempthorne { .. }
+            | Self::BlockTypes { .. }
             | Self::Hadamard { .. }
             | Self::Developed { .. }
             | Self::KroneckerSum { .. }

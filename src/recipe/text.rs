@@ -27,6 +27,9 @@ impl fmt::Display for Recipe {
             Self::CodeCosets { q, n, k } => {
                 write!(f, "cosets of a code of length {n} and dimension {k} over GF({q})")
             }
+            Self::BlockTypes { vectors } => {
+                write!(f, "block types, {} blocks of 4 runs", vectors.first().map_or(0, Vec::len))
+            }
             Self::Hadamard { matrix } => write!(f, "{matrix}"),
             Self::Developed { scheme } => write!(f, "{scheme}, with its rows as a factor"),
             Self::KroneckerSum { of, schemes, beside } => {

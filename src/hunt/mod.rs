@@ -1,0 +1,6 @@
+//! Searches by computation.
+
+pub mod blocks;
+mod random;
+
+pub use random::Random;
