@@ -96,16 +96,25 @@ fn signs(text: &str) -> Result<Vec<i8>, RecipeError> {
         .collect()
 }
 
+/// `H(n)` and how it is made.
 impl fmt::Display for HadamardRecipe {
     fn fmt(&self, f: &mut fmt::Formatter<'_>) -> fmt::Result {
-        let order = self.order().unwrap_or(0);
+        f.write_str(&self.short())?;
         match self {
-            Self::Sylvester { .. } => write!(f, "Sylvester matrix of order {order}"),
-            Self::PaleyOne { q } => write!(f, "Paley I over GF({q}), order {order}"),
-            Self::PaleyTwo { q } => write!(f, "Paley II over GF({q}), order {order}"),
-            Self::Kronecker { left, right } => write!(f, "({left}) ⊗ ({right})"),
-            Self::FourCirculants { .. } => write!(f, "Goethals–Seidel array of order {order}"),
-            Self::TurynType { .. } => write!(f, "Turyn-type sequences, order {order}"),
+            Self::Sylvester { .. } => write!(f, " of Sylvester"),
+            Self::PaleyOne { q } => write!(f, " of Paley, first kind over GF({q})"),
+            Self::PaleyTwo { q } => write!(f, " of Paley, second kind over GF({q})"),
+            Self::Kronecker { left, right } => write!(f, " = {} ⊗ {}", left.short(), right.short()),
+            Self::FourCirculants { .. } => write!(f, " of Goethals and Seidel"),
+            Self::TurynType { .. } => write!(f, " from Turyn-type sequences"),
         }
+    }
+}
+
+impl HadamardRecipe {
+    /// `H(n)`.
+    #[must_use]
+    pub fn short(&self) -> String {
+        format!("H({})", self.order().unwrap_or(0))
     }
 }

@@ -148,20 +148,30 @@ impl SchemeRecipe {
     }
 }
 
+/// `D(r,c,s)` and how it is made.
 impl fmt::Display for SchemeRecipe {
     fn fmt(&self, f: &mut fmt::Formatter<'_>) -> fmt::Result {
-        if let Some(Shape { rows, columns, order }) = self.shape() {
-            write!(f, "D({rows},{columns},{order})")?;
-        }
+        f.write_str(&self.short())?;
         match self {
-            Self::Zero { .. } => write!(f, " of zeros"),
-            Self::FieldTable { p, a, .. } => write!(f, " from the table of GF({p}^{a})"),
+            Self::Zero { .. } => Ok(()),
+            Self::FieldTable { p, a, .. } => write!(f, " over GF({})", p.saturating_pow(*a)),
             Self::Masuyama { .. } => write!(f, " of Masuyama"),
             Self::DawsonDeLauney { .. } => write!(f, " of Dawson and de Launey"),
             Self::Hadamard { matrix } => write!(f, " from {matrix}"),
-            Self::KroneckerSum { left, right } => write!(f, " = {left} ⊕ {right}"),
-            Self::DirectSum { left, right } => write!(f, " = {left} × {right}"),
-            Self::Starter { .. } => write!(f, " stored"),
+            Self::KroneckerSum { left, right } => write!(f, " = {} ⊕ {}", left.short(), right.short()),
+            Self::DirectSum { left, right } => write!(f, " = {} × {}", left.short(), right.short()),
+            Self::Starter { .. } => write!(f, ", stored"),
+        }
+    }
+}
+
+impl SchemeRecipe {
+    /// `D(r,c,s)`.
+    #[must_use]
+    pub fn short(&self) -> String {
+        match self.shape() {
+            Some(Shape { rows, columns, order }) => format!("D({rows},{columns},{order})"),
+            None => "D(?)".to_owned(),
         }
     }
 }

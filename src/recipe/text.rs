@@ -9,6 +9,7 @@ impl fmt::Display for Recipe {
     fn fmt(&self, f: &mut fmt::Formatter<'_>) -> fmt::Result {
         match self {
             Self::Balanced { .. } => write!(f, "levels in turn"),
+            Self::FullFactorial { levels } if levels.len() == 1 => write!(f, "{} runs in order", levels[0]),
             Self::FullFactorial { levels } => match Mix::new(levels.clone()) {
                 Ok(mix) => write!(f, "full factorial {mix}"),
                 Err(_) => write!(f, "full factorial"),
@@ -31,23 +32,34 @@ impl fmt::Display for Recipe {
                 write!(f, "block types, {} blocks of 4 runs", vectors.first().map_or(0, Vec::len))
             }
             Self::Hadamard { matrix } => write!(f, "{matrix}"),
-            Self::Developed { scheme } => write!(f, "{scheme}, with its rows as a factor"),
+            Self::Developed { scheme } => match scheme.shape() {
+                Some(shape) if shape.columns == 1 => {
+                    write!(f, "full factorial {}^1 {}^1", shape.order, shape.rows)
+                }
+                _ => write!(f, "{scheme}, with its rows as a factor"),
+            },
             Self::KroneckerSum { of, schemes, beside } => {
                 write!(f, "[{of}]")?;
                 for scheme in schemes.iter().filter(|s| s.shape().is_some_and(|s| s.columns > 1)) {
-                    write!(f, " ⊕ {scheme}")?;
+                    write!(f, " ⊕ {}", scheme.short())?;
                 }
                 write!(f, ", beside [{beside}]")
             }
             Self::ZeroColumn { of, schemes } => {
                 write!(f, "[{of}]")?;
                 for scheme in schemes.iter().filter(|s| s.shape().is_some_and(|s| s.columns > 1)) {
-                    write!(f, " ⊕ {scheme}")?;
+                    write!(f, " ⊕ {}", scheme.short())?;
                 }
                 write!(f, ", zero columns refined")
             }
             Self::MergingProduct { inner, outer, merged, of, .. } => {
-                write!(f, "({inner}) ⊗ ({outer}), {} columns merged with a factor of [{of}]", merged.len())
+                let (n, columns) = (merged.len(), if merged.len() == 1 { "column" } else { "columns" });
+                write!(
+                    f,
+                    "{} ⊗ {}, {n} {columns} merged with a factor of [{of}]",
+                    inner.short(),
+                    outer.short()
+                )
             }
             Self::Juxtapose { parts } => {
                 for (i, part) in parts.iter().enumerate() {
@@ -68,7 +80,9 @@ impl fmt::Display for Recipe {
             }
             Self::Group { of, columns } => write!(f, "{of}; {} columns grouped", columns.len()),
             Self::Foldover { of } => write!(f, "[{of}] and its complement"),
-            Self::EvenLevel { s, matrix } => write!(f, "{s} slices from {matrix} and its complement"),
+            Self::EvenLevel { s, matrix } => {
+                write!(f, "{s} slices from {} and its complement", matrix.short())
+            }
             Self::EightRunsPerLevel { s } => write!(f, "{s} slices of 8 runs"),
             Self::TwoGrids { left, right } => {
                 let length = |s: &Signs| match s {
