@@ -13,6 +13,7 @@ pub mod strength3;
 mod testing;
 
 mod blocks;
+mod orbits;
 
 use thiserror::Error;
 
@@ -20,6 +21,7 @@ use crate::algebra::AlgebraError;
 use crate::array::ArrayError;
 
 pub use blocks::{block_product, block_types};
+pub use orbits::{OrbitColumn, orbit_array};
 
 /// Why a construction cannot be carried out.
 #[derive(Clone, Debug, PartialEq, Eq, Error)]

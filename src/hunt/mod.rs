@@ -2,5 +2,6 @@
 
 pub mod blocks;
 mod random;
+pub mod symmetric;
 
 pub use random::Random;

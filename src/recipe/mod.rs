@@ -113,6 +113,17 @@ pub enum Recipe {
         /// The vectors, each of length p, over ±1, ±2, ±3.
         vectors: Vec<Vec<i8>>,
     },
+    /// One symbol per orbit of an abelian group that acts freely on the runs and by translation on
+    /// the levels, see [`orbit_array`](crate::construct::orbit_array).
+    Orbits {
+        /// The cyclic factors of the group; empty for no symmetry.
+        #[serde(default, skip_serializing_if = "Vec::is_empty")]
+        group: Vec<u16>,
+        /// The columns.
+        columns: Vec<Orbit>,
+        /// The strength for which they were chosen.
+        strength: u32,
+    },
     /// N − 1 two-level factors from a Hadamard matrix of order N, strength 2.
     Hadamard {
         /// The matrix.
@@ -240,6 +251,20 @@ pub enum Recipe {
         #[serde(default, skip_serializing_if = "Option::is_none")]
         column: Option<u32>,
     },
+}
+
+/// A column of [`Recipe::Orbits`].
+#[derive(Clone, Debug, PartialEq, Eq, Hash, Serialize, Deserialize)]
+#[serde(deny_unknown_fields)]
+#[cfg_attr(feature = "schema", derive(schemars::JsonSchema))]
+pub struct Orbit {
+    /// The number of levels.
+    pub levels: u16,
+    /// How far each generator of the group moves the level.
+    #[serde(default, skip_serializing_if = "Vec::is_empty")]
+    pub shifts: Vec<u16>,
+    /// The symbol of the first run of each orbit.
+    pub base: Vec<u16>,
 }
 
 /// One array of a [`Recipe::Juxtapose`].

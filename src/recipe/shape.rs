@@ -73,6 +73,7 @@ impl Recipe {
                 levels.push(u16::try_from(blocks).map_err(|_| wrong("more than 65535 blocks"))?);
                 levels
             }
+            Self::Orbits { columns, .. } => columns.iter().map(|c| c.levels).collect(),
             Self::Hadamard { matrix } => vec![2; order(matrix.order())? - 1],
             Self::Developed { scheme } => {
                 let Shape { rows, columns, order } = shape(scheme)?;
@@ -160,6 +161,9 @@ impl Recipe {
                 raise(2, m.checked_mul(2).and_then(|m| m.checked_add(*d)).ok_or_else(too_many)?)
             }
             Self::BlockTypes { vectors } => times(4, vectors.first().map_or(0, Vec::len)),
+            Self::Orbits { group, columns, .. } => group
+                .iter()
+                .try_fold(columns.first().map_or(0, |c| c.base.len()), |n, &g| times(n, usize::from(g))),
             Self::Hadamard { matrix } => order(matrix.order()),
             Self::Developed { scheme } => {
                 let shape = shape(scheme)?;
@@ -211,7 +215,9 @@ impl Recipe {
             | Self::EvenLevel { .. }
             | Self::EightRunsPerLevel { .. }
             | Self::TwoGrids { .. } => 3,
-            Self::Subspaces { strength, .. } | Self::Slices { strength, .. } => *strength,
+            Self::Subspaces { strength, .. }
+            | Self::Orbits { strength, .. }
+            | Self::Slices { strength, .. } => *strength,
             Self::Juxtapose { parts } => parts.iter().map(|p| p.of.strength()).min().unwrap_or(0),
             Self::LevelProduct { left, right, .. } => guaranteed(left).min(guaranteed(right)),
             Self::Arrange { of, split, .. } => {

@@ -31,6 +31,14 @@ impl fmt::Display for Recipe {
             Self::BlockTypes { vectors } => {
                 write!(f, "block types, {} blocks of 4 runs", vectors.first().map_or(0, Vec::len))
             }
+            Self::Orbits { group, columns, .. } => {
+                let orbits = columns.first().map_or(0, |c| c.base.len());
+                write!(f, "stored array, {orbits} orbits")?;
+                for (i, n) in group.iter().enumerate() {
+                    write!(f, "{}Z{n}", if i > 0 { " × " } else { " of " })?;
+                }
+                Ok(())
+            }
             Self::Hadamard { matrix } => write!(f, "{matrix}"),
             Self::Developed { scheme } => match scheme.shape() {
                 Some(shape) if shape.columns == 1 => {

@@ -1,0 +1,39 @@
+//! Looks for an array with a prescribed group: `find_array RUNS MIX GROUP SEED ATTEMPTS POOL`, the
+//! group written as cyclic orders (`3`, `3x3`) or `1`; prints the orbit columns.
+
+use trysquare::hunt::symmetric::{SymmetricHunt, hunt};
+use trysquare::mix::Mix;
+
+fn main() -> Result<(), Box<dyn std::error::Error>> {
+    let words: Vec<String> = std::env::args().skip(1).collect();
+    let [runs, mix, group, seed, attempts, pool] = &words[..] else {
+        return Err("write: find_array RUNS MIX GROUP SEED ATTEMPTS POOL".into());
+    };
+    let group: Vec<u16> = match group.as_str() {
+        "1" => vec![],
+        orders => orders.split('x').map(str::parse).collect::<Result<_, _>>()?,
+    };
+    let request = SymmetricHunt {
+        runs: runs.parse()?,
+        levels: mix.parse::<Mix>()?.levels().to_vec(),
+        group,
+        fixed: vec![],
+        seed: seed.parse()?,
+        attempts: attempts.parse()?,
+        pool: pool.parse()?,
+    };
+    let start = std::time::Instant::now();
+    let found = hunt(&request, None).ok_or("the runs are no multiple of the group or of a level")?;
+    eprintln!(
+        "{} of {} columns, attempt {}, {:.1} s",
+        found.columns.len(),
+        request.levels.len(),
+        found.attempt,
+        start.elapsed().as_secs_f64()
+    );
+    for c in &found.columns {
+        let list = |x: &[u16]| x.iter().map(u16::to_string).collect::<Vec<_>>().join(" ");
+        println!("{} | {} | {}", c.levels, list(&c.shifts), list(&c.base));
+    }
+    if found.complete { Ok(()) } else { Err("not all columns were found".into()) }
+}

@@ -1,0 +1,428 @@
+//! Arrays of strength 2 with a prescribed group of symmetries.
+//!
+//! The group acts freely on the runs and by translation on the levels, so a column is one symbol
+//! per orbit. Columns with many levels are chosen first; each next one is *solved for*: it is
+//! orthogonal to all columns that are there, found by backtracking over the orbits with counters.
+//! Among the solutions of one kind a clique is grown greedily, at each step the one of a few that
+//! leaves most of the others.
+
+use std::time::Instant;
+
+use rayon::prelude::*;
+
+use super::random::Random;
+use crate::construct::OrbitColumn;
+
+/// The largest number of runs that is searched.
+pub const MAX_RUNS: u32 = 128;
+
+/// What is looked for.
+#[derive(Clone, Debug)]
+pub struct SymmetricHunt {
+    /// The number of runs, at most [`MAX_RUNS`].
+    pub runs: u32,
+    /// The levels of the factors.
+    pub levels: Vec<u16>,
+    /// The cyclic factors of the group; empty for none.
+    pub group: Vec<u16>,
+    /// Columns that must be in the array, in the symmetry of the group.
+    pub fixed: Vec<OrbitColumn>,
+    /// The seed of the random numbers.
+    pub seed: u64,
+    /// How many attempts are made at the most.
+    pub attempts: u64,
+    /// How many solutions are drawn for a kind of column before a clique is grown.
+    pub pool: usize,
+}
+
+/// What a hunt came to.
+#[derive(Clone, Debug, PartialEq, Eq)]
+pub struct Found {
+    /// The columns: all that were asked for, or the most that were met.
+    pub columns: Vec<OrbitColumn>,
+    /// Whether they are all.
+    pub complete: bool,
+    /// The attempt that gave them, from 0.
+    pub attempt: u64,
+}
+
+/// How many attempts are made between looks at the clock; fixed, so that the result does not
+/// depend on the number of threads.
+const ROUND: u64 = 4;
+
+/// Runs the hunt until the columns are found, the attempts are used up or `deadline` has passed.
+///
+/// The same hunt gives the same columns for any number of threads, as long as the deadline does
+/// not cut it short. `None` when the request makes no sense: runs that the group or a level does
+/// not divide, or too many of them.
+#[must_use]
+pub fn hunt(hunt: &SymmetricHunt, deadline: Option<Instant>) -> Option<Found> {
+    let setting = Setting::new(hunt)?;
+    let mut best: Option<Found> = None;
+    let mut first = 0;
+    while first < hunt.attempts && deadline.is_none_or(|d| Instant::now() < d) {
+        let round: Vec<Found> = (first..(first + ROUND).min(hunt.attempts))
+            .into_par_iter()
+            .map(|attempt| setting.attempt(hunt, attempt))
+            .collect();
+        for found in round {
+            if found.complete {
+                return Some(found);
+            }
+            if best.as_ref().is_none_or(|b| b.columns.len() < found.columns.len()) {
+                best = Some(found);
+            }
+        }
+        first += ROUND;
+    }
+    best
+}
+
+/// A column with the runs of each level as a bit set.
+#[derive(Clone)]
+struct Column {
+    stored: OrbitColumn,
+    masks: Vec<u128>,
+    symbols: Vec<u8>,
+}
+
+struct Setting {
+    runs: usize,
+    order: usize,
+    orbits: usize,
+    /// For each element of the group how often each generator is applied.
+    elements: Vec<Vec<u32>>,
+    /// The kinds of columns, most levels first, with their number.
+    kinds: Vec<(u16, usize)>,
+}
+
+impl Setting {
+    fn new(hunt: &SymmetricHunt) -> Option<Self> {
+        let order = hunt.group.iter().try_fold(1u32, |n, &g| n.checked_mul(u32::from(g)))?;
+        let divides = |s: u16| s > 1 && s < 256 && hunt.runs.is_multiple_of(u32::from(s));
+        if hunt.runs == 0
+            || hunt.runs > MAX_RUNS
+            || order == 0
+            || !hunt.runs.is_multiple_of(order)
+            || !hunt.levels.iter().all(|&s| divides(s))
+        {
+            return None;
+        }
+        let mut kinds: Vec<(u16, usize)> = crate::mix::counts_of(&hunt.levels).into_iter().rev().collect();
+        for c in &hunt.fixed {
+            let kind = kinds.iter_mut().find(|k| k.0 == c.levels && k.1 > 0)?;
+            kind.1 -= 1;
+        }
+        let elements = (0..order)
+            .map(|mut g| {
+                hunt.group
+                    .iter()
+                    .map(|&n| {
+                        let digit = g % u32::from(n);
+                        g /= u32::from(n);
+                        digit
+                    })
+                    .collect()
+            })
+            .collect();
+        let (runs, order) = (hunt.runs as usize, order as usize);
+        Some(Self { runs, order, orbits: runs / order, elements, kinds })
+    }
+
+    fn attempt(&self, hunt: &SymmetricHunt, attempt: u64) -> Found {
+        let mut random = Random::new(hunt.seed ^ attempt.wrapping_mul(0xD1B5_4A32_D192_ED03));
+        let mut chosen: Vec<Column> = Vec::new();
+        for stored in &hunt.fixed {
+            let Some(column) = self.column(stored.clone()) else { break };
+            chosen.push(column);
+        }
+        let mut complete = chosen.len() == hunt.fixed.len();
+        for &(s, count) in &self.kinds {
+            complete &= self.extend(hunt, &mut chosen, s, count, &mut random);
+            if !complete {
+                break;
+            }
+        }
+        Found { columns: chosen.into_iter().map(|c| c.stored).collect(), complete, attempt }
+    }
+
+    /// Adds `count` columns of `s` levels; false when that many were not met.
+    fn extend(
+        &self,
+        hunt: &SymmetricHunt,
+        chosen: &mut Vec<Column>,
+        s: u16,
+        count: usize,
+        random: &mut Random,
+    ) -> bool {
+        let mut missing = count;
+        let mut pool: Vec<Column> = Vec::new();
+        let characters = self.characters(hunt, s);
+        while missing > 0 {
+            if pool.len() < missing {
+                self.draw(hunt.pool, chosen, s, &characters, &mut pool, random);
+                if pool.is_empty() {
+                    return false;
+                }
+            }
+            let mut choice: Option<(usize, usize)> = None;
+            for _ in 0..12.min(pool.len()) {
+                let i = random.below(pool.len());
+                let left = pool.iter().filter(|c| orthogonal(c, &pool[i])).count();
+                if choice.is_none_or(|(_, most)| left > most) {
+                    choice = Some((i, left));
+                }
+            }
+            let Some((i, _)) = choice else { return false };
+            let column = pool.swap_remove(i);
+            pool.retain(|c| orthogonal(c, &column));
+            chosen.push(column);
+            missing -= 1;
+        }
+        true
+    }
+
+    /// Fills the pool with columns orthogonal to all chosen ones.
+    fn draw(
+        &self,
+        size: usize,
+        chosen: &[Column],
+        s: u16,
+        characters: &[Vec<u16>],
+        pool: &mut Vec<Column>,
+        random: &mut Random,
+    ) {
+        let mut dry = 0;
+        let mut seen: std::collections::HashSet<Vec<u128>> =
+            pool.iter().map(|c| canonical(&c.masks)).collect();
+        let mut solver = Solver::new(self, chosen, s);
+        while pool.len() < size && dry < 40 + size / 4 {
+            let shifts = &characters[random.below(characters.len())];
+            dry += 1;
+            let Some(base) = solver.solve(shifts, random) else { continue };
+            let Some(column) = self.column(OrbitColumn { levels: s, shifts: shifts.clone(), base }) else {
+                continue;
+            };
+            if seen.insert(canonical(&column.masks)) {
+                pool.push(column);
+                dry = 0;
+            }
+        }
+    }
+
+    /// The homomorphisms from the group to the translations of `s` levels.
+    fn characters(&self, hunt: &SymmetricHunt, s: u16) -> Vec<Vec<u16>> {
+        let mut all: Vec<Vec<u16>> = vec![Vec::new()];
+        for &n in &hunt.group {
+            let steps: Vec<u16> =
+                (0..s).filter(|&x| (u32::from(x) * u32::from(n)).is_multiple_of(u32::from(s))).collect();
+            all = all
+                .iter()
+                .flat_map(|c| steps.iter().map(|&x| c.iter().copied().chain([x]).collect()))
+                .collect();
+        }
+        all
+    }
+
+    fn shift(&self, shifts: &[u16], g: usize, s: u16) -> usize {
+        let sum: u32 = self.elements[g].iter().zip(shifts).map(|(e, &x)| e * u32::from(x)).sum();
+        (sum % u32::from(s)) as usize
+    }
+
+    /// `None` when the column does not fit the setting.
+    fn column(&self, stored: OrbitColumn) -> Option<Column> {
+        let s = stored.levels;
+        if stored.base.len() != self.orbits || s < 2 || stored.base.iter().any(|&b| b >= s) {
+            return None;
+        }
+        let (mut masks, mut symbols) = (vec![0u128; usize::from(s)], vec![0u8; self.runs]);
+        for (o, &b) in stored.base.iter().enumerate() {
+            for g in 0..self.order {
+                let symbol = (usize::from(b) + self.shift(&stored.shifts, g, s)) % usize::from(s);
+                masks[symbol] |= 1 << (o * self.order + g);
+                symbols[o * self.order + g] = symbol as u8;
+            }
+        }
+        Some(Column { stored, masks, symbols })
+    }
+}
+
+/// The masks in an order that does not depend on the names of the levels.
+fn canonical(masks: &[u128]) -> Vec<u128> {
+    let mut masks = masks.to_vec();
+    masks.sort_unstable();
+    masks
+}
+
+fn orthogonal(a: &Column, b: &Column) -> bool {
+    let runs = a.symbols.len() as u32;
+    let product = u32::from(a.stored.levels) * u32::from(b.stored.levels);
+    runs.is_multiple_of(product)
+        && a.masks.iter().all(|x| b.masks.iter().all(|y| (x & y).count_ones() == runs / product))
+}
+
+/// Backtracking over the orbits for one column orthogonal to all chosen ones.
+struct Solver<'a> {
+    setting: &'a Setting,
+    chosen: &'a [Column],
+    s: u16,
+    /// For each chosen column how often each pair of levels may occur; `None` if it cannot be even.
+    limits: Option<Vec<u16>>,
+    /// Where the counters of each chosen column begin; the last ones count the new column alone.
+    offsets: Vec<usize>,
+    counters: Vec<u16>,
+}
+
+impl<'a> Solver<'a> {
+    /// A solution that needs more steps than this is given up.
+    const STEPS: usize = 4000;
+
+    fn new(setting: &'a Setting, chosen: &'a [Column], s: u16) -> Self {
+        let runs = setting.runs;
+        let (mut offsets, mut size) = (Vec::new(), 0);
+        let mut limits = Some(Vec::new());
+        for c in chosen {
+            offsets.push(size);
+            let pairs = usize::from(c.stored.levels) * usize::from(s);
+            size += pairs;
+            match &mut limits {
+                Some(l) if runs.is_multiple_of(pairs) => l.push((runs / pairs) as u16),
+                other => *other = None,
+            }
+        }
+        offsets.push(size);
+        size += usize::from(s);
+        if let Some(l) = &mut limits {
+            l.push((runs / usize::from(s)) as u16);
+        }
+        Self { setting, chosen, s, limits, offsets, counters: vec![0; size] }
+    }
+
+    fn solve(&mut self, shifts: &[u16], random: &mut Random) -> Option<Vec<u16>> {
+        let limits = self.limits.clone()?;
+        self.counters.fill(0);
+        let (orbits, s) = (self.setting.orbits, usize::from(self.s));
+        let shift: Vec<usize> =
+            (0..self.setting.order).map(|g| self.setting.shift(shifts, g, self.s)).collect();
+        let mut order: Vec<usize> = (0..orbits).collect();
+        random.shuffle(&mut order);
+        // The untried symbols of each orbit on the way, and the one in place.
+        let mut open: Vec<Vec<u16>> = vec![vec![0]];
+        let mut base = vec![0u16; orbits];
+        let mut steps = 0;
+        let mut depth = 0;
+        loop {
+            let o = order[depth];
+            match open[depth].pop() {
+                None => {
+                    open.pop();
+                    if depth == 0 {
+                        return None;
+                    }
+                    depth -= 1;
+                    self.count(order[depth], base[order[depth]], &shift, false);
+                }
+                Some(b) => {
+                    steps += 1;
+                    if steps > Self::STEPS {
+                        return None;
+                    }
+                    base[o] = b;
+                    self.count(o, b, &shift, true);
+                    if !self.within(o, b, &shift, &limits) {
+                        self.count(o, b, &shift, false);
+                        continue;
+                    }
+                    depth += 1;
+                    if depth == orbits {
+                        return Some(base);
+                    }
+                    let mut symbols: Vec<u16> = (0..s as u16).collect();
+                    random.shuffle(&mut symbols);
+                    open.push(symbols);
+                }
+            }
+        }
+    }
+
+    /// Puts orbit `o` with symbol `b` into the counters or takes it out.
+    fn count(&mut self, o: usize, b: u16, shift: &[usize], into: bool) {
+        let s = usize::from(self.s);
+        for (g, &x) in shift.iter().enumerate() {
+            let symbol = (usize::from(b) + x) % s;
+            let run = o * self.setting.order + g;
+            for (c, &offset) in self.chosen.iter().zip(&self.offsets) {
+                let at = offset + usize::from(c.symbols[run]) * s + symbol;
+                self.counters[at] = if into { self.counters[at] + 1 } else { self.counters[at] - 1 };
+            }
+            let at = self.offsets[self.chosen.len()] + symbol;
+            self.counters[at] = if into { self.counters[at] + 1 } else { self.counters[at] - 1 };
+        }
+    }
+
+    /// Whether the counters that orbit `o` touches are within their limits.
+    fn within(&self, o: usize, b: u16, shift: &[usize], limits: &[u16]) -> bool {
+        let s = usize::from(self.s);
+        shift.iter().enumerate().all(|(g, &x)| {
+            let symbol = (usize::from(b) + x) % s;
+            let run = o * self.setting.order + g;
+            let alone = self.chosen.len();
+            self.counters[self.offsets[alone] + symbol] <= limits[alone]
+                && self.chosen.iter().zip(&self.offsets).zip(limits).all(|((c, &offset), &limit)| {
+                    self.counters[offset + usize::from(c.symbols[run]) * s + symbol] <= limit
+                })
+        })
+    }
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+    use crate::construct::orbit_array;
+    use crate::verify::{Demand, Verdict, certify};
+
+    fn search(runs: u32, mix: &str, group: &[u16]) -> Found {
+        let levels = mix.parse::<crate::mix::Mix>().unwrap().levels().to_vec();
+        let request = SymmetricHunt {
+            runs,
+            levels,
+            group: group.to_vec(),
+            fixed: vec![],
+            seed: 1,
+            attempts: 400,
+            pool: 200,
+        };
+        let found = hunt(&request, None).unwrap();
+        assert_eq!(hunt(&request, None).unwrap(), found, "deterministic");
+        found
+    }
+
+    #[test]
+    fn small_arrays_are_found_and_judged() {
+        for (runs, mix, group) in [(12, "3 2^4", &[][..]), (18, "2 3^7", &[3]), (16, "4^5", &[2])] {
+            let found = search(runs, mix, group);
+            assert!(found.complete, "{mix}");
+            let array = orbit_array(group, &found.columns).unwrap();
+            assert_eq!(certify(&array, &Demand::strength(2)).unwrap().verdict, Verdict::Orthogonal, "{mix}");
+        }
+    }
+
+    #[test]
+    fn requests_that_make_no_sense() {
+        let request = |runs, levels: &[u16], group: &[u16]| SymmetricHunt {
+            runs,
+            levels: levels.to_vec(),
+            group: group.to_vec(),
+            fixed: vec![],
+            seed: 1,
+            attempts: 4,
+            pool: 10,
+        };
+        assert!(hunt(&request(12, &[5], &[]), None).is_none());
+        assert!(hunt(&request(12, &[2], &[5]), None).is_none());
+        assert!(hunt(&request(0, &[2], &[]), None).is_none());
+        assert!(hunt(&request(256, &[2], &[]), None).is_none());
+        // 12 runs cannot hold two six-level columns.
+        assert!(!hunt(&request(12, &[6, 6], &[]), None).unwrap().complete);
+    }
+}
