@@ -30,16 +30,33 @@ impl<'a> Candidates<'a> {
         }
     }
 
-    /// The mixes that cannot be obtained from another one by splitting, merging and dropping;
-    /// most degrees of freedom first.
+    /// The mixes that are not part of another one, most degrees of freedom first.
     #[must_use]
-    pub(super) fn maximal(mut self, packer: &Packer<'_>) -> Vec<Arc<Parent>> {
-        // Splitting keeps or lowers the degrees of freedom and raises the number of factors, so
-        // in this order a mix can only be obtained from an earlier one.
+    pub(super) fn not_contained(mut self) -> Vec<Arc<Parent>> {
+        self.sort();
+        let mut kept: Vec<Arc<Parent>> = Vec::new();
+        for Offer { bag, source, make } in self.offers {
+            if !kept.iter().any(|k| k.bag.contains(&bag)) {
+                kept.push(Arc::new(Parent { bag, recipe: make(), source }));
+            }
+        }
+        kept
+    }
+
+    /// Splitting keeps or lowers the degrees of freedom and raises the number of factors, so in
+    /// this order a mix can only be obtained from an earlier one.
+    fn sort(&mut self) {
         self.offers.sort_by(|a, b| {
             let key = |o: &Offer<'_>| (std::cmp::Reverse(o.bag.degrees()), o.bag.factors());
             key(a).cmp(&key(b)).then_with(|| a.bag.cmp(&b.bag))
         });
+    }
+
+    /// The mixes that cannot be obtained from another one by splitting, merging and dropping;
+    /// most degrees of freedom first.
+    #[must_use]
+    pub(super) fn maximal(mut self, packer: &Packer<'_>) -> Vec<Arc<Parent>> {
+        self.sort();
         let mut kept: Vec<Arc<Parent>> = Vec::new();
         for Offer { bag, source, make } in self.offers {
             if !kept.iter().any(|k| packer.fit(&bag, &k.bag).is_some()) {

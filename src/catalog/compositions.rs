@@ -10,16 +10,16 @@ use super::shelf::{CLOSED, Shelf, Variant};
 use crate::algebra::divisors;
 use crate::recipe::{Part, Recipe};
 
-/// Above [`CLOSED`] runs products use the parents and no more than this many splittings of each
-/// factor.
-const FEW: usize = 12;
+/// Above [`CLOSED`] runs one factor of a product has at most so many runs, and of each factor only
+/// so many parents, and of each pair only so many pairings, are used.
+const FEW: usize = 4;
 
 /// Column-by-column products of all pairs of arrays whose numbers of runs multiply to `runs`.
 ///
 /// A column of s·s' levels can be split into s and s' at any strength, so as many columns as
 /// possible are paired.
 pub(super) fn level_products<'a>(shelf: &'a Shelf, runs: u64, t: u32, candidates: &mut Candidates<'a>) {
-    for n1 in divisors(runs).into_iter().filter(|&n1| n1 > 1 && n1 * n1 <= runs) {
+    for n1 in divisors(runs).into_iter().filter(|&n1| n1 > 1 && n1 * n1 <= runs && n1 <= CLOSED) {
         let (left, right) = (shelf.variants(n1, t), shelf.variants(runs / n1, t));
         let few = if runs <= CLOSED { usize::MAX } else { FEW };
         for (i, a) in left.iter().enumerate().take(few) {
@@ -27,7 +27,7 @@ pub(super) fn level_products<'a>(shelf: &'a Shelf, runs: u64, t: u32, candidates
                 if i == 0 && j == 0 {
                     continue;
                 }
-                for pairing in pairings(&a.bag, &b.bag) {
+                for pairing in pairings(&a.bag, &b.bag).into_iter().take(few) {
                     let bag = pairing.bag(&a.bag, &b.bag);
                     let (left, right) = (Arc::clone(&left), Arc::clone(&right));
                     candidates.offer(bag, "product, level by level (Bush 1952)", move || {

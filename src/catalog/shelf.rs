@@ -94,7 +94,8 @@ impl Shelf {
     /// The parents at `runs` runs and `strength`, largest first.
     ///
     /// Up to [`CLOSED`] runs the maximal mixes reached by families, stored arrays and their
-    /// compositions; above, by families, stored arrays and products. An array of a single factor
+    /// compositions; above, what families, stored arrays and products give, without the exact search
+    /// for mixes that come from one another. An array of a single factor
     /// of `runs` levels is taken for granted and not listed. Cost: milliseconds for most numbers
     /// of runs, once.
     #[must_use]
@@ -110,13 +111,16 @@ impl Shelf {
             3 => strength_three::collect(self, runs, &mut candidates),
             _ => strength_any::collect(self, runs, strength, &mut candidates),
         }
-        let packer = Packer::new(self, strength);
-        let found = Arc::new(candidates.maximal(&packer));
+        let found = Arc::new(if runs <= CLOSED {
+            candidates.maximal(&Packer::new(self, strength))
+        } else {
+            candidates.not_contained()
+        });
         lock(&self.parents).entry(key).or_insert(found).clone()
     }
 
     /// All mixes obtained at `runs` runs by splitting columns only, the one `runs`-level column
-    /// first; empty above 65,535 runs.
+    /// first; above [`CLOSED`] runs that column and the parents, unsplit. Empty above 65,535 runs.
     #[must_use]
     pub fn variants(&self, runs: u64, strength: u32) -> Arc<Vec<Variant>> {
         let key = (strength, runs);
@@ -142,7 +146,7 @@ impl Shelf {
         for parent in self.parents(runs, strength).iter() {
             let mut partial: Vec<(Bag, Placement)> = vec![Default::default()];
             for &(s, count) in parent.bag.entries() {
-                let choices = self.splittings(s, strength);
+                let choices = if runs <= CLOSED { self.splittings(s, strength) } else { Vec::new() };
                 partial = spread(&partial, s, count, &choices);
                 partial.truncate(MAX_VARIANTS);
             }
