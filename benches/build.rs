@@ -1,6 +1,7 @@
 //! How long the constructions take, unjudged.
 
 use std::hint::black_box;
+use std::time::Duration;
 
 use criterion::{Criterion, criterion_group, criterion_main};
 use trysquare::algebra::Field;
@@ -9,7 +10,7 @@ use trysquare::construct::{field, hadamard, scheme, strength3};
 
 fn families(criterion: &mut Criterion) {
     let mut group = criterion.benchmark_group("build");
-    group.sample_size(10);
+    group.sample_size(10).warm_up_time(Duration::from_millis(300)).measurement_time(Duration::from_secs(1));
     group.bench_function("field of order 4096", |b| b.iter(|| Field::new(black_box(4096))));
     group.bench_function("Rao–Hamming 1024: 2^1023", |b| b.iter(|| field::rao_hamming(2, black_box(10))));
     group.bench_function("Rao–Hamming 729: 3^364", |b| b.iter(|| field::rao_hamming(3, black_box(6))));
@@ -32,7 +33,7 @@ fn recipes(criterion: &mut Criterion) {
     let recipes: Vec<_> =
         (2..=100).flat_map(|n| shelf.parents(n, 2).to_vec()).map(|p| p.recipe.clone()).collect();
     let mut group = criterion.benchmark_group("recipes");
-    group.sample_size(10);
+    group.sample_size(10).warm_up_time(Duration::from_millis(300)).measurement_time(Duration::from_secs(1));
     group.bench_function("every parent of strength 2 up to 100 runs", |b| {
         b.iter(|| recipes.iter().map(|r| r.build().map_or(0, |a| a.runs())).sum::<usize>());
     });

@@ -1,6 +1,7 @@
 //! How long an answer takes: from nothing, and on a shelf that has been used before.
 
 use std::hint::black_box;
+use std::time::Duration;
 
 use criterion::{BenchmarkId, Criterion, criterion_group, criterion_main};
 use trysquare::catalog::Shelf;
@@ -8,7 +9,7 @@ use trysquare::seek::{Request, seek, seek_on};
 
 fn seeking(criterion: &mut Criterion) {
     let mut group = criterion.benchmark_group("seek");
-    group.sample_size(10);
+    group.sample_size(10).warm_up_time(Duration::from_millis(300)).measurement_time(Duration::from_secs(1));
     let shelf = Shelf::new();
     for (mix, strength) in [
         ("2^1 3^7", 2),
@@ -36,7 +37,7 @@ fn seeking(criterion: &mut Criterion) {
 
 fn shelves(criterion: &mut Criterion) {
     let mut group = criterion.benchmark_group("shelf");
-    group.sample_size(10);
+    group.sample_size(10).warm_up_time(Duration::from_millis(300)).measurement_time(Duration::from_secs(1));
     for strength in [2, 3] {
         group.bench_function(BenchmarkId::new("every parent up to 100 runs", strength), |b| {
             b.iter(|| {
