@@ -24,6 +24,16 @@ pub(crate) fn has_strength(array: &Array, t: usize) -> bool {
     }
 }
 
+/// Strength `t`, or, with fewer factors, every combination of all of them equally often.
+pub(crate) fn has_strength_up_to(array: &Array, t: usize) -> bool {
+    has_strength(array, array.factors().min(t))
+}
+
+/// Strength 2; a single factor has every level equally often.
+pub(crate) fn has_strength_two(array: &Array) -> bool {
+    has_strength_up_to(array, 2)
+}
+
 fn balanced(array: &Array, chosen: &[usize]) -> bool {
     let cells: usize = chosen.iter().map(|&j| usize::from(array.levels()[j])).product();
     if !array.runs().is_multiple_of(cells) {

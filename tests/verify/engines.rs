@@ -22,7 +22,8 @@ fn strength_by_all(array: &Array, top: usize) -> usize {
     dual.strength()
 }
 
-fn refused(array: &Array, strength: usize) -> Witness {
+/// The witness on which both engines agree when they refuse.
+pub(crate) fn refused(array: &Array, strength: usize) -> Witness {
     let counted = find_violation(array, strength).unwrap().expect("counting refuses");
     assert_eq!(Some(&counted), by_definition(array, strength).unwrap().as_ref());
     assert!(counted.holds_for(array));
@@ -201,7 +202,7 @@ fn arrays() -> impl Strategy<Value = Array> {
 }
 
 /// The array with runs, columns and level names permuted by the given keys.
-fn permuted(array: &Array, keys: &[u64]) -> Array {
+pub(crate) fn permuted(array: &Array, keys: &[u64]) -> Array {
     let key = |i: usize, salt: u64| {
         (keys[i % keys.len()] ^ (i as u64).wrapping_mul(0x9E37_79B9_7F4A_7C15)).wrapping_mul(2 * salt + 3)
     };

@@ -3,3 +3,4 @@
 mod certificates;
 mod engines;
 mod samples;
+mod sought;

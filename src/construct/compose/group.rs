@@ -40,8 +40,11 @@ const NAME: &str = "grouping columns";
 /// ```
 /// use trysquare::array::Array;
 /// use trysquare::construct::compose::group;
+/// use trysquare::verify::{Demand, Verdict, certify};
 /// let a = Array::new(4, vec![2; 3], vec![0, 0, 1, 1, 0, 1, 0, 1, 0, 1, 1, 0])?;
 /// assert_eq!(group(&a, &[0, 1, 2])?, Array::new(4, vec![4], vec![0, 1, 2, 3])?);
+/// let judged = certify(&group(&a, &[0, 1, 2])?, &Demand::strength(1))?;
+/// assert_eq!(judged.verdict, Verdict::Orthogonal);
 /// # Ok::<(), Box<dyn std::error::Error>>(())
 /// ```
 pub fn group(a: &Array, columns: &[usize]) -> Result<Array, ConstructError> {

@@ -36,9 +36,12 @@ const NAME: &str = "juxtaposition";
 /// ```
 /// use trysquare::array::Array;
 /// use trysquare::construct::compose::juxtapose;
+/// use trysquare::verify::{Demand, Verdict, certify};
 /// let a = Array::new(4, vec![2, 2, 2], vec![0, 0, 1, 1, 0, 1, 0, 1, 0, 1, 1, 0])?;
 /// let array = juxtapose(&[(&a, Some(0)), (&a, Some(0)), (&a, Some(2))])?;
 /// assert_eq!((array.runs(), array.levels()), (12, &[6, 2, 2][..]));
+/// let judged = certify(&array, &Demand::strength(2))?;
+/// assert_eq!(judged.verdict, Verdict::Orthogonal);
 /// # Ok::<(), Box<dyn std::error::Error>>(())
 /// ```
 pub fn juxtapose(parts: &[(&Array, Option<usize>)]) -> Result<Array, ConstructError> {

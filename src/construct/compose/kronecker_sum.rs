@@ -52,12 +52,15 @@ enum Source {
 /// use trysquare::algebra::AbelianGroup;
 /// use trysquare::array::Array;
 /// use trysquare::construct::compose::{DifferenceBlock, kronecker_sum};
+/// use trysquare::verify::{Demand, Verdict, certify};
 /// // 3^3 · 3 in 9 runs from one three-level factor, D(3,3,3) and one more.
 /// let a = Array::new(3, vec![3], vec![0, 1, 2])?;
 /// let z3 = AbelianGroup::cyclic(3)?;
 /// let d = DifferenceBlock::new(&z3, 3, 3, &[0, 0, 0, 0, 1, 2, 0, 2, 1])?;
 /// let array = kronecker_sum(&a, &[d], Some(&a))?;
 /// assert_eq!((array.runs(), array.levels()), (9, &[3, 3, 3, 3][..]));
+/// let judged = certify(&array, &Demand::strength(2))?;
+/// assert_eq!(judged.verdict, Verdict::Orthogonal);
 /// # Ok::<(), Box<dyn std::error::Error>>(())
 /// ```
 pub fn kronecker_sum(

@@ -37,10 +37,13 @@ const NAME: &str = "level product";
 /// ```
 /// use trysquare::array::Array;
 /// use trysquare::construct::compose::level_product;
+/// use trysquare::verify::{Demand, Verdict, certify};
 /// let a = Array::new(4, vec![2; 3], vec![0, 0, 1, 1, 0, 1, 0, 1, 0, 1, 1, 0])?;
 /// let b = Array::new(9, vec![3; 2], vec![0, 0, 0, 1, 1, 1, 2, 2, 2, 0, 1, 2, 0, 1, 2, 0, 1, 2])?;
 /// let array = level_product(&a, &b, &[(0, 0), (1, 1)])?;
 /// assert_eq!((array.runs(), array.levels()), (36, &[6, 6, 2][..]));
+/// let judged = certify(&array, &Demand::strength(2))?;
+/// assert_eq!(judged.verdict, Verdict::Orthogonal);
 /// # Ok::<(), Box<dyn std::error::Error>>(())
 /// ```
 pub fn level_product(a: &Array, b: &Array, pairs: &[(usize, usize)]) -> Result<Array, ConstructError> {
@@ -100,9 +103,12 @@ fn unpaired(
 /// ```
 /// use trysquare::array::Array;
 /// use trysquare::construct::compose::cartesian;
+/// use trysquare::verify::{Demand, Verdict, certify};
 /// let a = Array::new(2, vec![2], vec![0, 1])?;
 /// let b = Array::new(3, vec![3], vec![0, 1, 2])?;
 /// assert_eq!(cartesian(&a, &b)?.row(4), [1, 1]);
+/// let judged = certify(&cartesian(&a, &b)?, &Demand::strength(2))?;
+/// assert_eq!(judged.verdict, Verdict::Orthogonal);
 /// # Ok::<(), Box<dyn std::error::Error>>(())
 /// ```
 pub fn cartesian(a: &Array, b: &Array) -> Result<Array, ConstructError> {

@@ -30,8 +30,11 @@ const NAME: &str = "level merging";
 /// ```
 /// use trysquare::array::Array;
 /// use trysquare::construct::compose::merge_levels;
+/// use trysquare::verify::{Demand, Verdict, certify};
 /// let a = Array::new(6, vec![6], vec![0, 1, 2, 3, 4, 5])?;
 /// assert_eq!(merge_levels(&a, 0, 3)?.column(0), [0, 0, 1, 1, 2, 2]);
+/// let judged = certify(&merge_levels(&a, 0, 3)?, &Demand::strength(1))?;
+/// assert_eq!(judged.verdict, Verdict::Orthogonal);
 /// # Ok::<(), Box<dyn std::error::Error>>(())
 /// ```
 pub fn merge_levels(a: &Array, column: usize, r: u16) -> Result<Array, ConstructError> {

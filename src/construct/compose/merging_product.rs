@@ -52,11 +52,14 @@ enum Source {
 /// ```
 /// use trysquare::array::Array;
 /// use trysquare::construct::compose::merging_product;
+/// use trysquare::verify::{Demand, Verdict, certify};
 /// let a = Array::new(2, vec![2], vec![0, 1])?;
 /// let h = Array::new(4, vec![2; 4], vec![0, 0, 0, 0, 0, 1, 0, 1, 0, 0, 1, 1, 0, 1, 1, 0])?;
 /// let b = h.select(&[1, 2, 3])?;
 /// let array = merging_product(&a, &h, &b, 0, &[0, 1])?;
 /// assert_eq!((array.runs(), array.levels()), (8, &[2, 2, 4, 2, 2][..]));
+/// let judged = certify(&array, &Demand::strength(2))?;
+/// assert_eq!(judged.verdict, Verdict::Orthogonal);
 /// # Ok::<(), Box<dyn std::error::Error>>(())
 /// ```
 pub fn merging_product(

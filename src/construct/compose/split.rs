@@ -35,9 +35,12 @@ const NAME: &str = "column splitting";
 /// ```
 /// use trysquare::array::Array;
 /// use trysquare::construct::compose::split;
+/// use trysquare::verify::{Demand, Verdict, certify};
 /// let a = Array::new(4, vec![4], vec![0, 1, 2, 3])?;
 /// let by = Array::new(4, vec![2; 3], vec![0, 0, 1, 1, 0, 1, 0, 1, 0, 1, 1, 0])?;
 /// assert_eq!(split(&a, 0, &by)?, by);
+/// let judged = certify(&split(&a, 0, &by)?, &Demand::strength(2))?;
+/// assert_eq!(judged.verdict, Verdict::Orthogonal);
 /// # Ok::<(), Box<dyn std::error::Error>>(())
 /// ```
 pub fn split(a: &Array, column: usize, by: &Array) -> Result<Array, ConstructError> {

@@ -41,12 +41,15 @@ const NAME: &str = "zero-column refinement";
 /// use trysquare::algebra::AbelianGroup;
 /// use trysquare::array::Array;
 /// use trysquare::construct::compose::{DifferenceBlock, zero_column_refinement};
+/// use trysquare::verify::{Demand, Verdict, certify};
 /// let a = Array::new(3, vec![3], vec![0, 1, 2])?;
 /// let z3 = AbelianGroup::cyclic(3)?;
 /// let cells = [0, 0, 0, 0, 0, 0, 0, 1, 2, 0, 1, 2, 0, 2, 1, 0, 2, 1];
 /// let d = DifferenceBlock::new(&z3, 6, 3, &cells)?;
 /// let array = zero_column_refinement(&a, &[d])?;
 /// assert_eq!((array.runs(), array.levels()), (18, &[3, 3, 3, 6][..]));
+/// let judged = certify(&array, &Demand::strength(2))?;
+/// assert_eq!(judged.verdict, Verdict::Orthogonal);
 /// # Ok::<(), Box<dyn std::error::Error>>(())
 /// ```
 pub fn zero_column_refinement(a: &Array, blocks: &[DifferenceBlock<'_>]) -> Result<Array, ConstructError> {

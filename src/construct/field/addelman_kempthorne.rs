@@ -51,9 +51,12 @@ const NAME: &str = "Addelman-Kempthorne";
 /// sum of schemes that of Shrikhande 1964.
 ///
 /// ```
+/// use trysquare::verify::{Demand, Verdict, certify};
 /// let a = trysquare::construct::field::addelman_kempthorne(3, 2)?;
 /// assert_eq!((a.runs(), a.mix().to_string()), (18, "3^7".to_owned()));
-/// # Ok::<(), trysquare::construct::ConstructError>(())
+/// let judged = certify(&a, &Demand::strength(2))?;
+/// assert_eq!(judged.verdict, Verdict::Orthogonal);
+/// # Ok::<(), Box<dyn std::error::Error>>(())
 /// ```
 pub fn addelman_kempthorne(q: u32, n: u32) -> Result<Array, ConstructError> {
     let scheme = Scheme::new(q)?;

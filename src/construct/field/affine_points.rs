@@ -30,9 +30,12 @@ const NAME: &str = "affine points";
 /// Sloane 1977, chapter 13).
 ///
 /// ```
+/// use trysquare::verify::{Demand, Verdict, certify};
 /// let a = trysquare::construct::field::affine_points(4)?;
 /// assert_eq!((a.runs(), a.mix().to_string()), (16, "2^8".to_owned()));
-/// # Ok::<(), trysquare::construct::ConstructError>(())
+/// let judged = certify(&a, &Demand::strength(3))?;
+/// assert_eq!(judged.verdict, Verdict::Orthogonal);
+/// # Ok::<(), Box<dyn std::error::Error>>(())
 /// ```
 pub fn affine_points(n: u32) -> Result<Array, ConstructError> {
     require(NAME, n >= 3, || format!("n of at least 3, not {n}"))?;

@@ -34,9 +34,12 @@ const NAME: &str = "Bush";
 ///
 /// ```
 /// use trysquare::construct::field::bush;
+/// use trysquare::verify::{Demand, Verdict, certify};
 /// assert_eq!(bush(3, 2)?.mix().to_string(), "3^4");
 /// assert_eq!(bush(4, 3)?.mix().to_string(), "4^6");
-/// # Ok::<(), trysquare::construct::ConstructError>(())
+/// let judged = certify(&bush(4, 3)?, &Demand::strength(3))?;
+/// assert_eq!(judged.verdict, Verdict::Orthogonal);
+/// # Ok::<(), Box<dyn std::error::Error>>(())
 /// ```
 pub fn bush(q: u32, t: u32) -> Result<Array, ConstructError> {
     let field = Field::new(q)?;

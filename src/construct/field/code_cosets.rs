@@ -37,9 +37,12 @@ const NAME: &str = "cosets of a code";
 /// Delsarte 1973 for dual distance and strength; the codes are shortened dual Hamming codes.
 ///
 /// ```
+/// use trysquare::verify::{Demand, Verdict, certify};
 /// let a = trysquare::construct::field::code_cosets(3, 4, 2)?;
 /// assert_eq!((a.runs(), a.mix().to_string()), (81, "3^4 9^1".to_owned()));
-/// # Ok::<(), trysquare::construct::ConstructError>(())
+/// let judged = certify(&a, &Demand::strength(3))?;
+/// assert_eq!(judged.verdict, Verdict::Orthogonal);
+/// # Ok::<(), Box<dyn std::error::Error>>(())
 /// ```
 pub fn code_cosets(q: u32, n: u32, k: u32) -> Result<Array, ConstructError> {
     let field = Field::new(q)?;

@@ -29,10 +29,13 @@ const NAME: &str = "full factorial";
 /// The definition.
 ///
 /// ```
+/// use trysquare::verify::{Demand, Verdict, certify};
 /// let a = trysquare::construct::field::full_factorial(&[2, 3])?;
 /// assert_eq!((a.runs(), a.mix().to_string()), (6, "2^1 3^1".to_owned()));
 /// assert_eq!(a.row(1), [1, 0]);
-/// # Ok::<(), trysquare::construct::ConstructError>(())
+/// let judged = certify(&a, &Demand::strength(2))?;
+/// assert_eq!(judged.verdict, Verdict::Orthogonal);
+/// # Ok::<(), Box<dyn std::error::Error>>(())
 /// ```
 pub fn full_factorial(levels: &[u16]) -> Result<Array, ConstructError> {
     let mix = Mix::new(levels.to_vec()).map_err(crate::array::ArrayError::from)?;

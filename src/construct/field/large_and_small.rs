@@ -30,9 +30,12 @@ const NAME: &str = "one large and many small subspaces";
 /// Wu, Zhang & Wang 1992; Hedayat, Sloane & Stufken 1999, chapter 9.
 ///
 /// ```
+/// use trysquare::verify::{Demand, Verdict, certify};
 /// let a = trysquare::construct::field::large_and_small(2, 3, 2)?;
 /// assert_eq!((a.runs(), a.mix().to_string()), (32, "4^8 8^1".to_owned()));
-/// # Ok::<(), trysquare::construct::ConstructError>(())
+/// let judged = certify(&a, &Demand::strength(2))?;
+/// assert_eq!(judged.verdict, Verdict::Orthogonal);
+/// # Ok::<(), Box<dyn std::error::Error>>(())
 /// ```
 pub fn large_and_small(p: u32, e: u32, d: u32) -> Result<Array, ConstructError> {
     require(NAME, e >= d && d >= 1, || format!("e ≥ d ≥ 1, not e = {e}, d = {d}"))?;

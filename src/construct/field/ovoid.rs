@@ -31,9 +31,12 @@ const NAME: &str = "ovoid";
 /// Bose 1947 (odd q), Qvist 1952 (even q); Hedayat, Sloane & Stufken 1999, chapter 5.
 ///
 /// ```
+/// use trysquare::verify::{Demand, Verdict, certify};
 /// let a = trysquare::construct::field::ovoid(3)?;
 /// assert_eq!((a.runs(), a.mix().to_string()), (81, "3^10".to_owned()));
-/// # Ok::<(), trysquare::construct::ConstructError>(())
+/// let judged = certify(&a, &Demand::strength(3))?;
+/// assert_eq!(judged.verdict, Verdict::Orthogonal);
+/// # Ok::<(), Box<dyn std::error::Error>>(())
 /// ```
 pub fn ovoid(q: u32) -> Result<Array, ConstructError> {
     let field = Field::new(q)?;

@@ -35,11 +35,14 @@ const NAME: &str = "linear array from points";
 ///
 /// ```
 /// use trysquare::construct::field::{points, points_strength};
+/// use trysquare::verify::{Demand, Verdict, certify};
 /// let fano = [[1, 0, 0], [0, 1, 0], [0, 0, 1], [1, 1, 1]].map(|p| p.to_vec());
 /// let a = points(2, &fano)?;
 /// assert_eq!((a.runs(), a.mix().to_string()), (8, "2^4".to_owned()));
 /// assert!(points_strength(2, &fano, 3)? && !points_strength(2, &fano, 4)?);
-/// # Ok::<(), trysquare::construct::ConstructError>(())
+/// let judged = certify(&a, &Demand::strength(3))?;
+/// assert_eq!(judged.verdict, Verdict::Orthogonal);
+/// # Ok::<(), Box<dyn std::error::Error>>(())
 /// ```
 pub fn points(q: u32, points: &[Vec<u16>]) -> Result<Array, ConstructError> {
     let (field, n) = checked(q, points)?;

@@ -30,9 +30,12 @@ const NAME: &str = "Rao-Hamming";
 /// Rao 1947; Hedayat, Sloane & Stufken 1999, section 3.4 (the dual of the Hamming code).
 ///
 /// ```
+/// use trysquare::verify::{Demand, Verdict, certify};
 /// let a = trysquare::construct::field::rao_hamming(3, 2)?;
 /// assert_eq!((a.runs(), a.mix().to_string()), (9, "3^4".to_owned()));
-/// # Ok::<(), trysquare::construct::ConstructError>(())
+/// let judged = certify(&a, &Demand::strength(2))?;
+/// assert_eq!(judged.verdict, Verdict::Orthogonal);
+/// # Ok::<(), Box<dyn std::error::Error>>(())
 /// ```
 pub fn rao_hamming(q: u32, n: u32) -> Result<Array, ConstructError> {
     let field = Field::new(q)?;

@@ -36,9 +36,12 @@ const NAME: &str = "spread";
 ///
 /// ```
 /// use trysquare::construct::field::spread;
+/// use trysquare::verify::{Demand, Verdict, certify};
 /// assert_eq!(spread(2, 4, 2)?.mix().to_string(), "4^5");
 /// assert_eq!(spread(2, 5, 2)?.mix().to_string(), "4^8 8^1");
-/// # Ok::<(), trysquare::construct::ConstructError>(())
+/// let judged = certify(&spread(2, 5, 2)?, &Demand::strength(2))?;
+/// assert_eq!(judged.verdict, Verdict::Orthogonal);
+/// # Ok::<(), Box<dyn std::error::Error>>(())
 /// ```
 pub fn spread(q: u32, n: u32, e: u32) -> Result<Array, ConstructError> {
     require(NAME, e >= 1 && n / 2 >= e, || format!("1 ≤ e and 2e ≤ n, not e = {e}, n = {n}"))?;

@@ -35,13 +35,16 @@ const NAME: &str = "linear array from subspaces";
 ///
 /// ```
 /// use trysquare::construct::field::subspaces;
+/// use trysquare::verify::{Demand, Verdict, certify};
 /// let plane = vec![vec![1, 0, 0], vec![0, 1, 0]];
 /// let points = [[0, 0, 1], [1, 0, 1], [0, 1, 1], [1, 1, 1]].map(|p| vec![p.to_vec()]);
 /// let all: Vec<_> = std::iter::once(plane).chain(points).collect();
 /// let a = subspaces(2, 3, &all, 2)?;
 /// assert_eq!((a.runs(), a.mix().to_string()), (8, "2^4 4^1".to_owned()));
 /// assert!(subspaces(2, 3, &all, 3).unwrap_err().to_string().contains("[0, 1, 2]"));
-/// # Ok::<(), trysquare::construct::ConstructError>(())
+/// let judged = certify(&a, &Demand::strength(2))?;
+/// assert_eq!(judged.verdict, Verdict::Orthogonal);
+/// # Ok::<(), Box<dyn std::error::Error>>(())
 /// ```
 pub fn subspaces(q: u32, n: u32, subspaces: &[Vec<Vec<u16>>], t: u32) -> Result<Array, ConstructError> {
     let field = Field::new(q)?;

@@ -35,9 +35,12 @@ const NAME: &str = "two subspaces and points";
 /// Own; the criterion is that of [`subspaces`](super::subspaces).
 ///
 /// ```
+/// use trysquare::verify::{Demand, Verdict, certify};
 /// let a = trysquare::construct::field::two_subspaces(2, 2)?;
 /// assert_eq!((a.runs(), a.mix().to_string()), (64, "2^12 4^2".to_owned()));
-/// # Ok::<(), trysquare::construct::ConstructError>(())
+/// let judged = certify(&a, &Demand::strength(3))?;
+/// assert_eq!(judged.verdict, Verdict::Orthogonal);
+/// # Ok::<(), Box<dyn std::error::Error>>(())
 /// ```
 pub fn two_subspaces(m: u32, d: u32) -> Result<Array, ConstructError> {
     require(NAME, (1..16).contains(&m) && d >= 1, || format!("1 ≤ m ≤ 15 and d ≥ 1, not m = {m}, d = {d}"))?;

@@ -27,9 +27,12 @@ const NAME: &str = "zero-sum array";
 /// Bush 1952, *Orthogonal arrays of index unity* (also for the bound, s ≤ t).
 ///
 /// ```
+/// use trysquare::verify::{Demand, Verdict, certify};
 /// let a = trysquare::construct::field::zero_sum(6, 2)?;
 /// assert_eq!((a.runs(), a.mix().to_string()), (36, "6^3".to_owned()));
-/// # Ok::<(), trysquare::construct::ConstructError>(())
+/// let judged = certify(&a, &Demand::strength(2))?;
+/// assert_eq!(judged.verdict, Verdict::Orthogonal);
+/// # Ok::<(), Box<dyn std::error::Error>>(())
 /// ```
 pub fn zero_sum(s: u16, t: u32) -> Result<Array, ConstructError> {
     require(NAME, s >= 2 && t >= 1, || format!("s ≥ 2 and t ≥ 1, not s = {s}, t = {t}"))?;

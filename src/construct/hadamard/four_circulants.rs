@@ -30,9 +30,12 @@ use crate::construct::ConstructError;
 ///
 /// ```
 /// use trysquare::construct::hadamard::goethals_seidel;
+/// use trysquare::verify::{Demand, Verdict, certify};
 /// let h = goethals_seidel([&[1, 1, 1], &[1, -1, -1], &[1, -1, -1], &[1, -1, -1]])?;
 /// assert!(h.order() == 12 && h.is_hadamard());
-/// # Ok::<(), trysquare::construct::ConstructError>(())
+/// let judged = certify(&h.to_array()?, &Demand::strength(2))?;
+/// assert_eq!(judged.verdict, Verdict::Orthogonal);
+/// # Ok::<(), Box<dyn std::error::Error>>(())
 /// ```
 pub fn goethals_seidel(rows: [&[i8]; 4]) -> Result<Hadamard, ConstructError> {
     const NAME: &str = "Goethals-Seidel";

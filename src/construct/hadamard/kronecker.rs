@@ -19,9 +19,12 @@ use crate::construct::ConstructError;
 ///
 /// ```
 /// use trysquare::construct::hadamard::{kronecker, paley_one, sylvester};
+/// use trysquare::verify::{Demand, Verdict, certify};
 /// let h = kronecker(&sylvester(1)?, &paley_one(11)?)?;
 /// assert!(h.order() == 24 && h.is_hadamard());
-/// # Ok::<(), trysquare::construct::ConstructError>(())
+/// let judged = certify(&h.to_array()?, &Demand::strength(2))?;
+/// assert_eq!(judged.verdict, Verdict::Orthogonal);
+/// # Ok::<(), Box<dyn std::error::Error>>(())
 /// ```
 pub fn kronecker(a: &Hadamard, b: &Hadamard) -> Result<Hadamard, ConstructError> {
     const NAME: &str = "Kronecker product";

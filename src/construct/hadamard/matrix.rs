@@ -150,9 +150,12 @@ impl Hadamard {
     ///
     /// ```
     /// use trysquare::construct::hadamard::paley_one;
+    /// use trysquare::verify::{Demand, Verdict, certify};
     /// let a = paley_one(11)?.to_array()?;
     /// assert_eq!((a.runs(), a.mix().to_string().as_str()), (12, "2^11"));
-    /// # Ok::<(), trysquare::construct::ConstructError>(())
+    /// let judged = certify(&a, &Demand::strength(2))?;
+    /// assert_eq!(judged.verdict, Verdict::Orthogonal);
+    /// # Ok::<(), Box<dyn std::error::Error>>(())
     /// ```
     pub fn to_array(&self) -> Result<Array, ConstructError> {
         let h = self.normalised();

@@ -33,9 +33,12 @@ use crate::construct::ConstructError;
 ///
 /// ```
 /// use trysquare::construct::hadamard::{miyamoto, sylvester};
+/// use trysquare::verify::{Demand, Verdict, certify};
 /// let h = miyamoto(5, &sylvester(2)?)?;
 /// assert!(h.order() == 20 && h.is_hadamard());
-/// # Ok::<(), trysquare::construct::ConstructError>(())
+/// let judged = certify(&h.to_array()?, &Demand::strength(2))?;
+/// assert_eq!(judged.verdict, Verdict::Orthogonal);
+/// # Ok::<(), Box<dyn std::error::Error>>(())
 /// ```
 pub fn miyamoto(q: u32, inner: &Hadamard) -> Result<Hadamard, ConstructError> {
     const NAME: &str = "Miyamoto";

@@ -23,9 +23,12 @@ use crate::construct::ConstructError;
 ///
 /// ```
 /// use trysquare::construct::hadamard::paley_one;
+/// use trysquare::verify::{Demand, Verdict, certify};
 /// let h = paley_one(27)?;
 /// assert!(h.order() == 28 && h.is_hadamard());
-/// # Ok::<(), trysquare::construct::ConstructError>(())
+/// let judged = certify(&h.to_array()?, &Demand::strength(2))?;
+/// assert_eq!(judged.verdict, Verdict::Orthogonal);
+/// # Ok::<(), Box<dyn std::error::Error>>(())
 /// ```
 pub fn paley_one(q: u32) -> Result<Hadamard, ConstructError> {
     const NAME: &str = "Paley I";

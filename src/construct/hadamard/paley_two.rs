@@ -25,9 +25,12 @@ use crate::construct::ConstructError;
 ///
 /// ```
 /// use trysquare::construct::hadamard::paley_two;
+/// use trysquare::verify::{Demand, Verdict, certify};
 /// let h = paley_two(17)?;
 /// assert!(h.order() == 36 && h.is_hadamard());
-/// # Ok::<(), trysquare::construct::ConstructError>(())
+/// let judged = certify(&h.to_array()?, &Demand::strength(2))?;
+/// assert_eq!(judged.verdict, Verdict::Orthogonal);
+/// # Ok::<(), Box<dyn std::error::Error>>(())
 /// ```
 pub fn paley_two(q: u32) -> Result<Hadamard, ConstructError> {
     const NAME: &str = "Paley II";

@@ -19,9 +19,12 @@ use crate::construct::ConstructError;
 ///
 /// ```
 /// use trysquare::construct::hadamard::sylvester;
+/// use trysquare::verify::{Demand, Verdict, certify};
 /// let h = sylvester(3)?;
 /// assert!(h.order() == 8 && h.is_hadamard());
-/// # Ok::<(), trysquare::construct::ConstructError>(())
+/// let judged = certify(&h.to_array()?, &Demand::strength(2))?;
+/// assert_eq!(judged.verdict, Verdict::Orthogonal);
+/// # Ok::<(), Box<dyn std::error::Error>>(())
 /// ```
 pub fn sylvester(k: u32) -> Result<Hadamard, ConstructError> {
     const NAME: &str = "Sylvester";

@@ -3,7 +3,7 @@ use sha2::{Digest, Sha256};
 use super::*;
 use crate::algebra::prime_powers;
 use crate::array::Array;
-use crate::construct::scheme::by_definition::has_strength_two;
+use crate::construct::testing::has_strength_two;
 
 /// H·Hᵀ = nI by plain multiplication of the entries.
 fn is_hadamard_by_definition(h: &Hadamard) -> bool {

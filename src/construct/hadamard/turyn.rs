@@ -28,9 +28,12 @@ use crate::construct::ConstructError;
 ///
 /// ```
 /// use trysquare::construct::hadamard::turyn_type;
+/// use trysquare::verify::{Demand, Verdict, certify};
 /// let h = turyn_type(&[1, 1], &[1, 1], &[1, -1], &[1])?;
 /// assert!(h.order() == 20 && h.is_hadamard());
-/// # Ok::<(), trysquare::construct::ConstructError>(())
+/// let judged = certify(&h.to_array()?, &Demand::strength(2))?;
+/// assert_eq!(judged.verdict, Verdict::Orthogonal);
+/// # Ok::<(), Box<dyn std::error::Error>>(())
 /// ```
 pub fn turyn_type(x: &[i8], y: &[i8], z: &[i8], w: &[i8]) -> Result<Hadamard, ConstructError> {
     const NAME: &str = "Turyn-type sequences";

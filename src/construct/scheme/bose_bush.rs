@@ -26,9 +26,12 @@ use crate::construct::ConstructError;
 ///
 /// ```
 /// use trysquare::construct::scheme::bose_bush;
+/// use trysquare::verify::{Demand, Verdict, certify};
 /// let a = bose_bush(2, 4)?;
 /// assert_eq!((a.runs(), a.mix().to_string().as_str()), (32, "4^9"));
-/// # Ok::<(), trysquare::construct::ConstructError>(())
+/// let judged = certify(&a, &Demand::strength(2))?;
+/// assert_eq!(judged.verdict, Verdict::Orthogonal);
+/// # Ok::<(), Box<dyn std::error::Error>>(())
 /// ```
 pub fn bose_bush(lambda: u16, s: u16) -> Result<Array, ConstructError> {
     let parameters = prime_power(u32::from(s)).and_then(|(p, b)| {

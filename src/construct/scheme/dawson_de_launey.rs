@@ -36,10 +36,13 @@ type BlockColumn = [Form; 4];
 ///
 /// ```
 /// use trysquare::construct::scheme::dawson_de_launey;
+/// use trysquare::verify::{Demand, Verdict, certify};
 /// let d = dawson_de_launey(5)?;
 /// assert_eq!((d.rows(), d.columns(), d.order()), (20, 20, 5));
 /// assert!(d.is_difference_scheme());
-/// # Ok::<(), trysquare::construct::ConstructError>(())
+/// let judged = certify(&trysquare::construct::scheme::developed(&d)?, &Demand::strength(2))?;
+/// assert_eq!(judged.verdict, Verdict::Orthogonal);
+/// # Ok::<(), Box<dyn std::error::Error>>(())
 /// ```
 pub fn dawson_de_launey(q: u32) -> Result<Scheme, ConstructError> {
     let field = Field::new(q)?;

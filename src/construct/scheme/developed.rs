@@ -19,9 +19,12 @@ use crate::construct::ConstructError;
 ///
 /// ```
 /// use trysquare::construct::scheme::{developed, masuyama};
+/// use trysquare::verify::{Demand, Verdict, certify};
 /// let a = developed(&masuyama(3)?)?;
 /// assert_eq!((a.runs(), a.mix().to_string().as_str()), (18, "3^6"));
-/// # Ok::<(), trysquare::construct::ConstructError>(())
+/// let judged = certify(&a, &Demand::strength(2))?;
+/// assert_eq!(judged.verdict, Verdict::Orthogonal);
+/// # Ok::<(), Box<dyn std::error::Error>>(())
 /// ```
 pub fn developed(scheme: &Scheme) -> Result<Array, ConstructError> {
     let (runs, levels) = shape(scheme)?;
@@ -45,9 +48,12 @@ pub fn developed(scheme: &Scheme) -> Result<Array, ConstructError> {
 ///
 /// ```
 /// use trysquare::construct::scheme::{developed_with_rows, masuyama};
+/// use trysquare::verify::{Demand, Verdict, certify};
 /// let a = developed_with_rows(&masuyama(3)?)?;
 /// assert_eq!((a.runs(), a.mix().to_string().as_str()), (18, "3^6 6^1"));
-/// # Ok::<(), trysquare::construct::ConstructError>(())
+/// let judged = certify(&a, &Demand::strength(2))?;
+/// assert_eq!(judged.verdict, Verdict::Orthogonal);
+/// # Ok::<(), Box<dyn std::error::Error>>(())
 /// ```
 pub fn developed_with_rows(scheme: &Scheme) -> Result<Array, ConstructError> {
     let Some(rows) = u16::try_from(scheme.rows()).ok().filter(|&r| r >= 2) else {

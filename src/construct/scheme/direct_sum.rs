@@ -25,10 +25,13 @@ use crate::construct::ConstructError;
 ///
 /// ```
 /// use trysquare::construct::scheme::{direct_sum, field_table};
+/// use trysquare::verify::{Demand, Verdict, certify};
 /// let d = direct_sum(&field_table(2, 1, 1)?, &field_table(3, 1, 1)?)?;
 /// assert_eq!((d.rows(), d.columns(), d.order()), (6, 2, 6));
 /// assert!(d.is_difference_scheme());
-/// # Ok::<(), trysquare::construct::ConstructError>(())
+/// let judged = certify(&trysquare::construct::scheme::developed(&d)?, &Demand::strength(2))?;
+/// assert_eq!(judged.verdict, Verdict::Orthogonal);
+/// # Ok::<(), Box<dyn std::error::Error>>(())
 /// ```
 pub fn direct_sum(a: &Scheme, b: &Scheme) -> Result<Scheme, ConstructError> {
     let s = a.order().checked_mul(b.order()).ok_or_else(|| {

@@ -26,10 +26,13 @@ use crate::construct::ConstructError;
 ///
 /// ```
 /// use trysquare::construct::scheme::field_table;
+/// use trysquare::verify::{Demand, Verdict, certify};
 /// let d = field_table(3, 2, 1)?;
 /// assert_eq!((d.rows(), d.columns(), d.order()), (9, 9, 3));
 /// assert!(d.is_difference_scheme());
-/// # Ok::<(), trysquare::construct::ConstructError>(())
+/// let judged = certify(&trysquare::construct::scheme::developed(&d)?, &Demand::strength(2))?;
+/// assert_eq!(judged.verdict, Verdict::Orthogonal);
+/// # Ok::<(), Box<dyn std::error::Error>>(())
 /// ```
 pub fn field_table(p: u16, a: u32, b: u32) -> Result<Scheme, ConstructError> {
     if b == 0 || b > a {

@@ -18,9 +18,12 @@ use crate::construct::hadamard::Hadamard;
 ///
 /// ```
 /// use trysquare::construct::{hadamard::paley_one, scheme::from_hadamard};
+/// use trysquare::verify::{Demand, Verdict, certify};
 /// let d = from_hadamard(&paley_one(11)?)?;
 /// assert_eq!((d.rows(), d.columns(), d.order()), (12, 12, 2));
-/// # Ok::<(), trysquare::construct::ConstructError>(())
+/// let judged = certify(&trysquare::construct::scheme::developed(&d)?, &Demand::strength(2))?;
+/// assert_eq!(judged.verdict, Verdict::Orthogonal);
+/// # Ok::<(), Box<dyn std::error::Error>>(())
 /// ```
 pub fn from_hadamard(matrix: &Hadamard) -> Result<Scheme, ConstructError> {
     let h = matrix.normalised();

@@ -31,11 +31,14 @@ const NAME: &str = "Starter of a difference scheme";
 ///
 /// ```
 /// use trysquare::construct::scheme::from_starter;
+/// use trysquare::verify::{Demand, Verdict, certify};
 /// let columns = [[0, 0, 0, 0, 0, 0], [0, 1, 2, 3, 4, 5]];
 /// let d = from_starter(&[6], &columns)?;
 /// assert_eq!(d.group().factors(), [2, 3]);
 /// assert_eq!(d.column(1), [0, 3, 4, 1, 2, 5]); // 1 is (1, 1), that is 1 + 2·1
-/// # Ok::<(), trysquare::construct::ConstructError>(())
+/// let judged = certify(&trysquare::construct::scheme::developed(&d)?, &Demand::strength(2))?;
+/// assert_eq!(judged.verdict, Verdict::Orthogonal);
+/// # Ok::<(), Box<dyn std::error::Error>>(())
 /// ```
 pub fn from_starter<C: AsRef<[u16]> + Sync>(
     factors: &[u16],

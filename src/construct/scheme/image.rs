@@ -20,10 +20,13 @@ use crate::construct::ConstructError;
 ///
 /// ```
 /// use trysquare::construct::scheme::{field_table, image};
+/// use trysquare::verify::{Demand, Verdict, certify};
 /// let d = image(&field_table(2, 3, 3)?, 4)?;
 /// assert_eq!((d.rows(), d.columns(), d.order()), (8, 8, 4));
 /// assert!(d.is_difference_scheme());
-/// # Ok::<(), trysquare::construct::ConstructError>(())
+/// let judged = certify(&trysquare::construct::scheme::developed(&d)?, &Demand::strength(2))?;
+/// assert_eq!(judged.verdict, Verdict::Orthogonal);
+/// # Ok::<(), Box<dyn std::error::Error>>(())
 /// ```
 pub fn image(scheme: &Scheme, t: u16) -> Result<Scheme, ConstructError> {
     let s = scheme.order();

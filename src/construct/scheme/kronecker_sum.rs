@@ -22,10 +22,13 @@ use crate::construct::ConstructError;
 ///
 /// ```
 /// use trysquare::construct::scheme::{field_table, kronecker_sum, masuyama};
+/// use trysquare::verify::{Demand, Verdict, certify};
 /// let d = kronecker_sum(&masuyama(3)?, &field_table(3, 1, 1)?)?;
 /// assert_eq!((d.rows(), d.columns(), d.order()), (18, 18, 3));
 /// assert!(d.is_difference_scheme());
-/// # Ok::<(), trysquare::construct::ConstructError>(())
+/// let judged = certify(&trysquare::construct::scheme::developed(&d)?, &Demand::strength(2))?;
+/// assert_eq!(judged.verdict, Verdict::Orthogonal);
+/// # Ok::<(), Box<dyn std::error::Error>>(())
 /// ```
 pub fn kronecker_sum(a: &Scheme, b: &Scheme) -> Result<Scheme, ConstructError> {
     if a.order() != b.order() {

@@ -30,10 +30,13 @@ use crate::construct::ConstructError;
 ///
 /// ```
 /// use trysquare::construct::scheme::masuyama;
+/// use trysquare::verify::{Demand, Verdict, certify};
 /// let d = masuyama(5)?;
 /// assert_eq!((d.rows(), d.columns(), d.order()), (10, 10, 5));
 /// assert!(d.is_difference_scheme());
-/// # Ok::<(), trysquare::construct::ConstructError>(())
+/// let judged = certify(&trysquare::construct::scheme::developed(&d)?, &Demand::strength(2))?;
+/// assert_eq!(judged.verdict, Verdict::Orthogonal);
+/// # Ok::<(), Box<dyn std::error::Error>>(())
 /// ```
 pub fn masuyama(q: u32) -> Result<Scheme, ConstructError> {
     let field = Field::new(q)?;

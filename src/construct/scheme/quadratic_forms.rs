@@ -34,11 +34,14 @@ const NAME: &str = "Quadratic forms";
 ///
 /// ```
 /// use trysquare::construct::scheme::quadratic_forms;
+/// use trysquare::verify::{Demand, Verdict, certify};
 /// // Two blocks over GF(3).
 /// let d = quadratic_forms(3, &[[[1, 1, 2], [0, 1, 0]], [[2, 1, 0], [0, 2, 2]]])?;
 /// assert_eq!((d.rows(), d.columns(), d.order()), (6, 6, 3));
 /// assert!(d.is_difference_scheme());
-/// # Ok::<(), trysquare::construct::ConstructError>(())
+/// let judged = certify(&trysquare::construct::scheme::developed(&d)?, &Demand::strength(2))?;
+/// assert_eq!(judged.verdict, Verdict::Orthogonal);
+/// # Ok::<(), Box<dyn std::error::Error>>(())
 /// ```
 pub fn quadratic_forms<R: AsRef<[[u16; 3]]> + Sync>(q: u32, forms: &[R]) -> Result<Scheme, ConstructError> {
     let field = Field::new(q)?;

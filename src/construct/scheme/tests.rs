@@ -1,8 +1,9 @@
-use super::by_definition::{has_strength_two, is_scheme};
+use super::by_definition::is_scheme;
 use super::*;
 use crate::algebra::{factorise, prime_power, prime_powers};
 use crate::construct::ConstructError;
 use crate::construct::hadamard::{paley_one, sylvester};
+use crate::construct::testing::has_strength_two;
 
 fn check(d: &Scheme, shape: (usize, usize, u16)) {
     assert_eq!((d.rows(), d.columns(), d.order()), shape);

@@ -20,9 +20,12 @@ use crate::construct::ConstructError;
 ///
 /// ```
 /// use trysquare::construct::scheme::zero_column;
+/// use trysquare::verify::{Demand, Verdict, certify};
 /// let d = zero_column(5, 3)?;
 /// assert_eq!((d.rows(), d.columns(), d.order()), (5, 1, 3));
-/// # Ok::<(), trysquare::construct::ConstructError>(())
+/// let judged = certify(&trysquare::construct::scheme::developed(&d)?, &Demand::strength(1))?;
+/// assert_eq!(judged.verdict, Verdict::Orthogonal);
+/// # Ok::<(), Box<dyn std::error::Error>>(())
 /// ```
 pub fn zero_column(r: usize, s: u16) -> Result<Scheme, ConstructError> {
     Scheme::from_fn(s, r, 1, |_, _, _| 0)

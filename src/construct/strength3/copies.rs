@@ -29,8 +29,11 @@ const NAME: &str = "copies";
 /// ```
 /// use trysquare::array::Array;
 /// use trysquare::construct::strength3::copies;
+/// use trysquare::verify::{Demand, Verdict, certify};
 /// let a = Array::new(2, vec![2], vec![0, 1])?;
 /// assert_eq!(copies(&a, 3)?.levels(), [3, 2]);
+/// let judged = certify(&copies(&a, 3)?, &Demand::strength(2))?;
+/// assert_eq!(judged.verdict, Verdict::Orthogonal);
 /// # Ok::<(), Box<dyn std::error::Error>>(())
 /// ```
 pub fn copies(a: &Array, c: u16) -> Result<Array, ConstructError> {
@@ -74,9 +77,12 @@ pub fn copies_levels(a: &[u16], c: u16) -> Result<Vec<u16>, ConstructError> {
 /// ```
 /// use trysquare::array::Array;
 /// use trysquare::construct::strength3::copies_into;
+/// use trysquare::verify::{Demand, Verdict, certify};
 /// let a = Array::new(4, vec![2, 2], vec![0, 0, 1, 1, 0, 1, 0, 1])?;
 /// let array = copies_into(&a, 1, 3)?;
 /// assert_eq!((array.runs(), array.levels()), (12, &[2, 6][..]));
+/// let judged = certify(&array, &Demand::strength(2))?;
+/// assert_eq!(judged.verdict, Verdict::Orthogonal);
 /// # Ok::<(), Box<dyn std::error::Error>>(())
 /// ```
 pub fn copies_into(a: &Array, column: usize, c: u16) -> Result<Array, ConstructError> {

@@ -30,8 +30,11 @@ const NAME: &str = "derived array";
 /// ```
 /// use trysquare::array::Array;
 /// use trysquare::construct::strength3::derived;
+/// use trysquare::verify::{Demand, Verdict, certify};
 /// let a = Array::new(6, vec![3, 2], vec![0, 0, 1, 1, 2, 2, 0, 1, 0, 1, 0, 1])?;
 /// assert_eq!(derived(&a, 0, 2)?, Array::new(2, vec![2], vec![0, 1])?);
+/// let judged = certify(&derived(&a, 0, 2)?, &Demand::strength(1))?;
+/// assert_eq!(judged.verdict, Verdict::Orthogonal);
 /// # Ok::<(), Box<dyn std::error::Error>>(())
 /// ```
 pub fn derived(a: &Array, column: usize, symbol: u16) -> Result<Array, ConstructError> {

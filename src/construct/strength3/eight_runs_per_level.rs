@@ -54,9 +54,12 @@ const CAP: [u16; 4] = [1, 2, 4, 7];
 ///
 /// ```
 /// use trysquare::construct::strength3::eight_runs_per_level;
+/// use trysquare::verify::{Demand, Verdict, certify};
 /// let array = eight_runs_per_level(5)?;
 /// assert_eq!((array.runs(), array.levels()), (40, &[5, 2, 2, 2, 2, 2, 2][..]));
-/// # Ok::<(), trysquare::construct::ConstructError>(())
+/// let judged = certify(&array, &Demand::strength(3))?;
+/// assert_eq!(judged.verdict, Verdict::Orthogonal);
+/// # Ok::<(), Box<dyn std::error::Error>>(())
 /// ```
 pub fn eight_runs_per_level(s: u16) -> Result<Array, ConstructError> {
     let levels = eight_runs_per_level_levels(s)?;

@@ -36,9 +36,12 @@ const NAME: &str = "one even-level factor";
 /// ```
 /// use trysquare::array::Array;
 /// use trysquare::construct::strength3::even_level;
+/// use trysquare::verify::{Demand, Verdict, certify};
 /// let h = Array::new(4, vec![2; 3], vec![0, 0, 1, 1, 0, 1, 0, 1, 0, 1, 1, 0])?;
 /// let array = even_level(6, &h)?;
 /// assert_eq!((array.runs(), array.levels()), (24, &[6, 2, 2, 2][..]));
+/// let judged = certify(&array, &Demand::strength(3))?;
+/// assert_eq!(judged.verdict, Verdict::Orthogonal);
 /// # Ok::<(), Box<dyn std::error::Error>>(())
 /// ```
 pub fn even_level(s: u16, h: &Array) -> Result<Array, ConstructError> {
@@ -76,7 +79,7 @@ mod tests {
                 assert_eq!(array.runs(), usize::from(s) * h.runs());
                 assert_eq!(array.levels()[0], s);
                 assert_eq!(array.levels(), even_level_levels(s, h.factors()).unwrap());
-                assert!(has_strength(&array, 3));
+                assert!(has_strength_up_to(&array, 3));
             }
         }
     }

@@ -35,9 +35,12 @@ const NAME: &str = "foldover";
 /// ```
 /// use trysquare::array::Array;
 /// use trysquare::construct::strength3::foldover;
+/// use trysquare::verify::{Demand, Verdict, certify};
 /// let a = Array::new(4, vec![2; 3], vec![0, 0, 1, 1, 0, 1, 0, 1, 0, 1, 1, 0])?;
 /// let array = foldover(&a)?;
 /// assert_eq!((array.runs(), array.levels()), (8, &[2, 2, 2, 2][..]));
+/// let judged = certify(&array, &Demand::strength(3))?;
+/// assert_eq!(judged.verdict, Verdict::Orthogonal);
 /// # Ok::<(), Box<dyn std::error::Error>>(())
 /// ```
 pub fn foldover(a: &Array) -> Result<Array, ConstructError> {
@@ -69,7 +72,7 @@ mod tests {
             let array = foldover(&a).unwrap();
             assert_eq!((array.runs(), array.factors()), (2 * a.runs(), a.factors() + 1));
             assert_eq!(array.levels(), foldover_levels(a.factors()).unwrap());
-            assert!(has_strength(&array, 3));
+            assert!(has_strength_up_to(&array, 3));
             assert_eq!(derived(&array, a.factors(), 0).unwrap(), a);
         }
         assert!(!has_strength(&foldover(&twelve()).unwrap(), 4));

@@ -40,11 +40,14 @@ const NAME: &str = "grids";
 /// use trysquare::algebra::AbelianGroup;
 /// use trysquare::construct::compose::DifferenceBlock;
 /// use trysquare::construct::strength3::grids;
+/// use trysquare::verify::{Demand, Verdict, certify};
 /// let z3 = AbelianGroup::cyclic(3)?;
 /// let u = DifferenceBlock::new(&z3, 6, 2, &[0, 0, 0, 0, 0, 0, 0, 1, 2, 0, 1, 2])?;
 /// let v = DifferenceBlock::new(&z3, 3, 2, &[0, 0, 0, 0, 1, 2])?;
 /// let array = grids(&u, &v)?;
 /// assert_eq!((array.runs(), array.levels()), (54, &[6, 3, 3, 3][..]));
+/// let judged = certify(&array, &Demand::strength(3))?;
+/// assert_eq!(judged.verdict, Verdict::Orthogonal);
 /// # Ok::<(), Box<dyn std::error::Error>>(())
 /// ```
 pub fn grids(u: &DifferenceBlock<'_>, v: &DifferenceBlock<'_>) -> Result<Array, ConstructError> {
@@ -141,10 +144,13 @@ pub fn grids_levels(s1: usize, s2: usize, g: u16, m: usize) -> Result<Vec<u16>, 
 /// ```
 /// use trysquare::array::Array;
 /// use trysquare::construct::strength3::two_grids;
+/// use trysquare::verify::{Demand, Verdict, certify};
 /// let u = Array::new(6, vec![2; 2], vec![0, 0, 0, 0, 0, 0, 0, 0, 0, 1, 1, 1])?;
 /// let v = Array::new(4, vec![2; 2], vec![0, 0, 0, 0, 0, 0, 1, 1])?;
 /// let array = two_grids(&u, &v)?;
 /// assert_eq!((array.runs(), array.levels()), (48, &[6, 4, 2, 2][..]));
+/// let judged = certify(&array, &Demand::strength(3))?;
+/// assert_eq!(judged.verdict, Verdict::Orthogonal);
 /// # Ok::<(), Box<dyn std::error::Error>>(())
 /// ```
 pub fn two_grids(u: &Array, v: &Array) -> Result<Array, ConstructError> {

@@ -32,10 +32,13 @@ const NAME: &str = "slices";
 /// ```
 /// use trysquare::array::Array;
 /// use trysquare::construct::strength3::slices;
+/// use trysquare::verify::{Demand, Verdict, certify};
 /// let even = Array::new(4, vec![2; 3], vec![0, 0, 1, 1, 0, 1, 0, 1, 0, 1, 1, 0])?;
 /// let odd = Array::new(4, vec![2; 3], vec![0, 0, 1, 1, 0, 1, 0, 1, 1, 0, 0, 1])?;
 /// let array = slices(&[&even, &odd])?;
 /// assert_eq!((array.runs(), array.levels()), (8, &[2, 2, 2, 2][..]));
+/// let judged = certify(&array, &Demand::strength(3))?;
+/// assert_eq!(judged.verdict, Verdict::Orthogonal);
 /// # Ok::<(), Box<dyn std::error::Error>>(())
 /// ```
 pub fn slices(parts: &[&Array]) -> Result<Array, ConstructError> {
