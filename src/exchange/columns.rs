@@ -1,5 +1,6 @@
 //! Which columns of a table are factors.
 
+use super::error::one_line;
 use super::options::is_default_name;
 use super::table::{Counter, Sequence, Table, Values};
 use super::{ReadError, ReadOptions, RunColumn};
@@ -97,7 +98,7 @@ impl Body<'_, '_> {
             } else {
                 let shown: Vec<&str> = names.iter().take(12).map(String::as_str).collect();
                 let more = if names.len() > shown.len() { ", …" } else { "" };
-                format!("the columns are {}{more}", shown.join(", "))
+                format!("the columns are {}{more}", one_line(&shown.join(", ")))
             },
         })
     }
@@ -149,8 +150,10 @@ impl Body<'_, '_> {
             if counter.sequence(self.column(j)) != Sequence::Repeating {
                 found.push(j);
             } else if j == 0 {
-                let what =
-                    format!("{:?} may number the runs or be a factor: it repeats values", self.title(j));
+                let what = format!(
+                    "{} may number the runs or be a factor: it repeats values",
+                    one_line(&self.title(j))
+                );
                 return Err(self.unclear(j, what));
             }
         }
@@ -199,7 +202,7 @@ impl Body<'_, '_> {
             remarks.push("column 1 counts the runs and has no name: it was taken as the run number".into());
             found.push(0);
         } else if others.contains(&Sequence::Repeating) {
-            let title = self.title(0);
+            let title = one_line(&self.title(0));
             let what = format!("{title} may number the runs or be a factor: all its values differ");
             return Err(self.unclear(0, what));
         }

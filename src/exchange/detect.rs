@@ -89,15 +89,23 @@ fn look(column: &[u32], values: &Values, counter: &mut Counter<'_>) -> Look {
     let below = counter.count(&column[1..]);
     let all = |number: bool| below.iter().all(|&(v, _)| values.is_number(v) == number);
     let number = values.is_number(first);
-    let level = |counts: &[(u32, u32)]| counts.windows(2).all(|w| w[0].1 == w[1].1);
+    let repeats = below.iter().any(|&(_, n)| n > 1);
+    let level = |counts: &[u32]| counts.windows(2).all(|w| w[0] == w[1]);
+    let mut counts: Vec<u32> = below.iter().map(|&(_, n)| n).collect();
+    let balanced_below = level(&counts);
+    let again = below.iter().position(|&(v, _)| v == first);
+    match again {
+        Some(at) => counts[at] = counts[at].saturating_add(1),
+        None => counts.push(1),
+    }
     Look {
         number,
-        recurs: below.iter().any(|&(v, _)| v == first),
+        recurs: again.is_some(),
         mismatch: all(!number),
-        repeats: below.iter().any(|&(_, n)| n > 1),
-        balanced_below: level(&below),
-        balanced: level(&counter.count(column)),
-        below: counter.sequence(&column[1..]),
+        repeats,
+        balanced_below,
+        balanced: level(&counts),
+        below: if repeats { Sequence::Repeating } else { counter.sequence(&column[1..]) },
     }
 }
 

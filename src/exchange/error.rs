@@ -82,7 +82,7 @@ pub enum ReadError {
     },
     /// A row with another number of cells than the others.
     #[error(
-        "{place}: the row has {found} cells, the table has {expected} columns; every row needs {expected}"
+        "{place}: the row has {}, the table has {}; every row needs {expected}", count(*found, "cell"), count(*expected, "column")
     )]
     Ragged {
         /// The first cell that is missing or too many.
@@ -193,12 +193,22 @@ pub enum ReadError {
 }
 
 fn named(name: &Option<String>) -> String {
-    name.as_ref().map_or_else(String::new, |n| format!(" ({n})"))
+    name.as_ref().map_or_else(String::new, |n| format!(" ({})", one_line(n)))
+}
+
+/// A text without anything that would break a line or move a cursor.
+pub(super) fn one_line(text: &str) -> String {
+    text.replace(char::is_control, " ")
+}
+
+/// `1 cell`, `2 cells`.
+pub(super) fn count(n: usize, what: &str) -> String {
+    format!("{n} {what}{}", if n == 1 { "" } else { "s" })
 }
 
 fn call(name: &Option<String>, column: &usize) -> String {
     match name {
-        Some(n) if n.contains(char::is_whitespace) => format!("{n:?}"),
+        Some(n) if n.contains(|c: char| c.is_whitespace() || c.is_control()) => format!("{n:?}"),
         Some(n) => n.clone(),
         None => column.to_string(),
     }

@@ -4,6 +4,7 @@ use std::sync::Arc;
 
 use super::columns::{Body, Roles};
 use super::detect::has_header;
+use super::error::one_line;
 use super::table::{Counter, Table, Values};
 use super::{ReadError, ReadOptions, Received, Symbols};
 use crate::array::Array;
@@ -79,6 +80,9 @@ fn levels(
     let mut counter = Counter::new(values);
     let mut all = Vec::with_capacity(factors.len());
     for (at, &j) in factors.iter().enumerate() {
+        if values.any_same {
+            merged(body, j, remarks)?;
+        }
         let mut meanings: Vec<u32> = counter.count(body.column(j)).into_iter().map(|(m, _)| m).collect();
         let place = || table.place(body.skip, j);
         let (found, name, column) = (meanings.len(), body.name(j), j + 1);
@@ -97,7 +101,7 @@ fn levels(
         }
         let runs = table.rows - body.skip;
         if declared.is_none() && runs > 8 && 2 * found > runs {
-            let title = body.title(j);
+            let title = one_line(&body.title(j));
             remarks.push(format!(
                 "{title} has {found} levels in {runs} runs; if it is no factor, leave it out with --leave-out"
             ));
@@ -108,9 +112,6 @@ fn levels(
             // Numbers before texts: `None` is the greater here.
             (number_a.is_none(), number_a, text_a).cmp(&(number_b.is_none(), number_b, text_b))
         });
-        if values.any_same {
-            merged(body, j, remarks)?;
-        }
         all.push(meanings);
     }
     Ok(all)
@@ -126,7 +127,7 @@ fn merged(body: &Body<'_, '_>, j: usize, remarks: &mut Vec<String>) -> Result<()
     written.dedup();
     for pair in written.windows(2).filter(|p| p[0].0 == p[1].0) {
         let [a, b] = [pair[0].1, pair[1].1].map(|c| &*table.texts[c as usize]);
-        let title = body.title(j);
+        let title = one_line(&body.title(j));
         if a.contains(',') || b.contains(',') {
             let row = column.iter().position(|&c| c == pair[1].1).unwrap_or(0);
             return Err(ReadError::Ambiguous {

@@ -8,6 +8,7 @@ use serde::de::{DeserializeSeed, Deserializer, Error, IgnoredAny, MapAccess, Seq
 
 use super::csv::{hand_on, push_number};
 use super::encoding::decode;
+use super::error::count;
 use super::interpret::interpret;
 use super::table::{Origin, Table, Texts};
 use super::{ReadError, ReadOptions, Received, Symbols};
@@ -110,7 +111,8 @@ impl Sheet {
             self.width = found;
         } else if found != self.width {
             return Err(E::custom(format!(
-                "run {run} has {found} cells, run 1 has {}; every run needs the same",
+                "run {run} has {}, run 1 has {}; every run needs the same",
+                count(found, "cell"),
                 self.width
             )));
         }
@@ -161,9 +163,9 @@ impl<'de> Visitor<'de> for Document<'_> {
         }
         match &self.0.levels {
             Some(levels) if levels.len() != self.0.width => Err(A::Error::custom(format!(
-                "\"levels\" has {} entries, the runs have {} cells; give one number of levels per factor",
+                "\"levels\" has {} entries, the runs have {}; give one number of levels per factor",
                 levels.len(),
-                self.0.width
+                count(self.0.width, "cell")
             ))),
             _ => Ok(()),
         }

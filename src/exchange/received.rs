@@ -4,6 +4,7 @@ use std::fmt::Write as _;
 use std::sync::Arc;
 
 use super::Separator;
+use super::error::{count, one_line};
 use crate::array::Array;
 
 /// An array from elsewhere, with what the file was taken to be, so that a person can disagree.
@@ -67,9 +68,8 @@ impl Received {
             let separator = self.separator.map_or("none".to_owned(), |s| s.to_string());
             let _ = write!(text, "; separator: {separator}");
         }
-        let plural = |n: usize, what: &str| format!("{n} {what}{}", if n == 1 { "" } else { "s" });
         let (runs, factors) = (self.array.runs(), self.array.factors());
-        let _ = write!(text, "; {} × {}; levels ", plural(runs, "run"), plural(factors, "factor"));
+        let _ = write!(text, "; {} × {}; levels ", count(runs, "run"), count(factors, "factor"));
         if factors <= SHOWN {
             let levels: Vec<String> = self.array.levels().iter().map(u16::to_string).collect();
             text.push_str(&levels.join(" "));
@@ -79,6 +79,6 @@ impl Received {
         if let Some(names) = &self.names {
             let _ = write!(text, "; factors {}", list(names, "none"));
         }
-        text
+        one_line(&text)
     }
 }

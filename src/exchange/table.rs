@@ -3,9 +3,14 @@
 use std::collections::HashMap;
 use std::sync::Arc;
 
+use rayon::prelude::*;
+
 use super::decimal::Decimal;
 use super::encoding::line_at;
 use super::{Place, Separator};
+
+/// Columns that are filled together.
+const TILE: usize = 32;
 
 /// A rectangle of cells. Equal texts have equal numbers; the cells stand column by column.
 pub(super) struct Table<'a> {
@@ -33,10 +38,15 @@ impl<'a> Table<'a> {
     /// A table from its cells row by row.
     pub(super) fn new(texts: Texts, by_row: &[u32], width: usize, origin: Origin<'a>) -> Self {
         let rows = by_row.len().checked_div(width).unwrap_or(0);
-        let mut cells = Vec::with_capacity(by_row.len());
-        for j in 0..width {
-            cells.extend(by_row.get(j..).unwrap_or_default().iter().step_by(width));
-        }
+        let mut cells = vec![0; rows * width];
+        // A few columns at a time: each row is then read, and each column written, in whole cache lines.
+        cells.par_chunks_mut((rows * TILE).max(1)).enumerate().for_each(|(tile, columns)| {
+            for (i, row) in by_row.chunks_exact(width).enumerate() {
+                for (column, &cell) in columns.chunks_exact_mut(rows).zip(&row[tile * TILE..]) {
+                    column[i] = cell;
+                }
+            }
+        });
         let texts = texts.into_list();
         Self { texts, cells, rows, width, origin, names: None, levels: None, remarks: Vec::new() }
     }

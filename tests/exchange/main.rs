@@ -40,7 +40,10 @@ fn a_spreadsheet_with_decimal_commas_and_loose_ends() {
         "header: yes; run column: Run; separator: semicolon; 9 runs × 4 factors; levels 3 3 3 3; \
          factors oven °C, feed, time, mould"
     );
-    assert_eq!(r.remarks, ["empty cells at the end of 10 lines were left out"]);
+    assert_eq!(
+        r.remarks,
+        ["lines without any filled cell, skipped: 1", "lines with empty cells at the end, left out: 10"]
+    );
     assert_eq!(r.array.column(0), [0, 0, 0, 1, 1, 1, 2, 2, 2]);
     assert_eq!(r.array.column(1), [0, 1, 2, 0, 1, 2, 0, 1, 2]);
     assert_eq!((r.level_name(1, 0), r.level_name(1, 2)), (Some("12,5"), Some("17,5")));
@@ -66,7 +69,7 @@ fn quoted_cells_with_separators_quotes_and_line_ends() {
     assert_eq!(
         r.describe(),
         "header: yes; run column: none; separator: comma; 8 runs × 4 factors; levels 2 2 2 2; \
-         factors heat, oven, part, fan, speed\n(rpm)"
+         factors heat, oven, part, fan, speed (rpm)"
     );
     assert_eq!(r.level_name(0, 0), Some("high \"ramp\""));
     assert_eq!(r.level_name(3, 0), Some("1e3"));
@@ -108,7 +111,7 @@ fn run_orders_comments_and_a_response() {
         "header: yes; run column: StdOrder, RunOrder; left out: yield; separator: comma; \
          8 runs × 4 factors; levels 2 2 2 2; factors A, B, C, D"
     );
-    assert_eq!(r.remarks, ["2 lines that begin with # were taken as comments"]);
+    assert_eq!(r.remarks, ["lines that begin with #, taken as comments: 2"]);
     assert_eq!(rows(&r), eight_runs());
     let options = ReadOptions { only: Some(vec!["D".into(), "3".into()]), ..ReadOptions::default() };
     let r = read_any(&file("orders.csv"), &options).unwrap();
@@ -224,8 +227,8 @@ fn every_refusal_names_the_place_and_what_to_do() {
              numbers without thousands separators",
         ),
         ("bad_not_closed.json", "line 1, column 42: not JSON: EOF while parsing a list"),
-        ("bad_ragged.json", "line 3, column 4: run 3 has 1 cells, run 1 has 2; every run needs the same"),
-        ("bad_null.json", "line 1, column 13: the cell is empty; every run needs a level of every factor"),
+        ("bad_ragged.json", "line 3, column 4: run 3 has 1 cell, run 1 has 2; every run needs the same"),
+        ("bad_null.json", "line 1, column 14: the cell is empty; every run needs a level of every factor"),
         (
             "bad_no_array.json",
             "line 1, column 11: the object has no key \"array\"; give the runs under this key",
@@ -342,6 +345,72 @@ fn json_of_every_shape() {
     );
     assert_eq!(
         refused("[[0,1],[0,[1]]]"),
-        "line 1, column 10: invalid type: sequence, expected a level, that is a number or a text"
+        "line 1, column 11: invalid type: sequence, expected a level, that is a number or a text"
+    );
+}
+
+/// A header is taken as one only when its cells cannot be levels.
+#[test]
+fn headers_are_told_from_runs_or_asked_for() {
+    let below = |first: &str, rows: &[&str]| {
+        let text = format!("{first}\n{}\n", rows.join("\n"));
+        let options = ReadOptions { run_column: RunColumn::No, ..ReadOptions::default() };
+        match read_any(text.as_bytes(), &options) {
+            Ok(r) => (if r.header { "header" } else { "run" }).to_owned(),
+            Err(e) => e.to_string().split_once(": ").unwrap().1[..33].to_owned(),
+        }
+    };
+    let unclear = "the first row may be a header or ";
+    let numbers = ["0,0,0", "0,1,1", "1,0,1", "1,1,0"];
+    let texts = ["low,cold,A", "low,hot,B", "high,cold,B", "high,hot,A"];
+    let reals = ["0.1,0.7", "0.2,0.3", "0.3,0.9"];
+    for (first, rows, expected) in [
+        ("A,B,C", &numbers[..], "header"),
+        ("0,1,1", &numbers, "run"),
+        // A third level that occurs once; a run with a letter for a digit.
+        ("2,0,0", &numbers, "run"),
+        ("O,0,0", &numbers, unclear),
+        ("1,2,3", &numbers, unclear),
+        ("y,A,y", &numbers, "header"),
+        ("oven,temp,mould", &texts, "header"),
+        ("low,cold,A", &texts[1..], "run"),
+        // A run done twice, or names that are levels too: balanced only without it.
+        ("low,hot,A", &texts, unclear),
+        // A column named like one of its levels; a centre point.
+        ("oven,temp,A", &texts, unclear),
+        ("mid,mid,mid", &texts, unclear),
+        ("1,2,3", &texts, "header"),
+        ("x,y", &reals, "header"),
+        ("0.4,0.1", &reals, "run"),
+        ("oven", &["low", "high", "low", "high"], unclear),
+        ("oven", &["0", "1", "0", "1"], "header"),
+        ("oven,temp", &["low,cold", "high,hot"], unclear),
+        ("Run,A,B", &["1,A,B", "2,A,A", "3,B,B", "4,B,A"], "header"),
+    ] {
+        assert_eq!(below(first, rows), expected, "{first} over {rows:?}");
+    }
+}
+
+/// The columns that number the runs, told apart from factors.
+#[test]
+fn run_columns_are_told_from_factors_or_asked_for() {
+    let of = |text: &str| match read_any(text.as_bytes(), &ReadOptions::default()) {
+        Ok(r) => r.run_columns.join(", "),
+        Err(e) => e.to_string(),
+    };
+    assert_eq!(of("No.,A,B\n3,0,0\n1,0,1\n4,1,0\n2,1,1\n"), "No.");
+    assert_eq!(of("A,B,run order\n0,0,2\n0,1,1\n1,0,4\n1,1,3\n"), "run order");
+    assert_eq!(of("run,A,B\nR1,0,0\nR2,0,1\nR3,1,0\nR4,1,1\n"), "run");
+    assert_eq!(of("0 0 0\n1 0 1\n2 1 0\n3 1 1\n"), "column 1");
+    // Levels as many as runs in every column: the first is one like the others.
+    assert_eq!(of("0,0\n1,1\n2,2\n"), "");
+    // Names that Trysquare itself gives to factors.
+    assert_eq!(of("F1,F2\n0,0\n1,1\n2,0\n3,1\n"), "");
+    let asked = "may number the runs or be a factor: all its values differ; say which with --run-column 1 or \
+                 --run-column no";
+    assert_eq!(of("3,0,0\n1,0,1\n4,1,0\n2,1,1\n"), format!("line 1, column 1: column 1 {asked}"));
+    assert_eq!(
+        of("mix 1,0,0\nmix 2,0,1\nmix 3,1,0\nmix 4,1,1\n"),
+        format!("line 1, column 1: column 1 {asked}")
     );
 }

@@ -64,16 +64,20 @@ struct Row<'r> {
     len: usize,
     /// The number of cells up to the last that is not empty.
     filled: usize,
+    /// Whether an empty cell stands before a filled one.
+    gaps: bool,
     comment: bool,
 }
 
 struct Shape {
     width: usize,
     comments: usize,
+    /// Rows of separators only.
+    bare: usize,
 }
 
 impl<'a> Lines<'a> {
-    /// Hands every row that is not blank to `take`.
+    /// Hands every row to `take`, blank ones with no cell filled.
     fn each(&self, mut take: impl FnMut(Row<'_>) -> Result<(), ReadError>) -> Result<(), ReadError> {
         let bytes = self.text.as_bytes();
         let mut reader = ReaderBuilder::new()
@@ -90,17 +94,16 @@ impl<'a> Lines<'a> {
             }
             let ends = bytes[from..].iter().take_while(|b| matches!(b, b'\n' | b'\r')).count();
             let start = from + ends;
-            let (mut len, mut filled) = (0, 0);
+            let (mut len, mut filled, mut full) = (0, 0, 0);
             for cell in cells(&record, self.separator) {
                 len += 1;
                 if !cell.is_empty() {
                     filled = len;
+                    full += 1;
                 }
             }
-            if filled > 0 {
-                let comment = bytes.get(start) == Some(&b'#');
-                take(Row { start, cells: &record, len, filled, comment })?;
-            }
+            let comment = bytes.get(start) == Some(&b'#');
+            take(Row { start, cells: &record, len, filled, gaps: full < filled, comment })?;
         }
     }
 
@@ -108,8 +111,11 @@ impl<'a> Lines<'a> {
     fn shape(&self) -> Result<Shape, ReadError> {
         let mut widths: HashMap<usize, (usize, usize)> = HashMap::new();
         let mut hashed: HashMap<usize, usize> = HashMap::new();
+        let mut bare = 0;
         self.each(|row| {
-            if row.comment {
+            if row.filled == 0 {
+                bare += usize::from(row.len > 1);
+            } else if row.comment {
                 *hashed.entry(row.filled).or_insert(0) += 1;
             } else {
                 let order = widths.len();
@@ -120,7 +126,7 @@ impl<'a> Lines<'a> {
         let most = widths.iter().max_by_key(|(_, (count, order))| (*count, std::cmp::Reverse(*order)));
         let Some((&width, _)) = most else { return Err(ReadError::Empty) };
         let comments = hashed.iter().filter(|(w, _)| **w != width).map(|(_, n)| n).sum();
-        Ok(Shape { width, comments })
+        Ok(Shape { width, comments, bare })
     }
 
     fn table(&self, shape: &Shape, separator: Option<Separator>) -> Result<Table<'a>, ReadError> {
@@ -128,7 +134,7 @@ impl<'a> Lines<'a> {
         let mut trailing = 0;
         let (mut texts, mut by_row, mut starts) = (Texts::new(), Vec::new(), Vec::new());
         self.each(|row| {
-            if row.comment && row.filled != width {
+            if row.filled == 0 || (row.comment && row.filled != width) {
                 return Ok(());
             }
             self.check(&row, width, starts.is_empty())?;
@@ -139,10 +145,13 @@ impl<'a> Lines<'a> {
         })?;
         let mut table = Table::new(texts, &by_row, width, Origin::Lines(self.text, starts, separator));
         if shape.comments > 0 {
-            table.remarks.push(format!("{} lines that begin with # were taken as comments", shape.comments));
+            table.remarks.push(format!("lines that begin with #, taken as comments: {}", shape.comments));
+        }
+        if shape.bare > 0 {
+            table.remarks.push(format!("lines without any filled cell, skipped: {}", shape.bare));
         }
         if trailing > 0 {
-            table.remarks.push(format!("empty cells at the end of {trailing} lines were left out"));
+            table.remarks.push(format!("lines with empty cells at the end, left out: {trailing}"));
         }
         Ok(table)
     }
@@ -156,9 +165,9 @@ impl<'a> Lines<'a> {
             let found = if row.filled > width { row.filled } else { row.len };
             return Err(ReadError::Ragged { place, expected: width, found });
         }
-        let empty = cells(row.cells, self.separator).take(width).position(str::is_empty);
-        if let Some(j) = empty.filter(|_| !first) {
-            let place = Place::Line { line: line(), column: j + 1 };
+        if (row.gaps || row.filled < width) && !first {
+            let empty = cells(row.cells, self.separator).position(str::is_empty);
+            let place = Place::Line { line: line(), column: empty.map_or(width, |j| j + 1) };
             return Err(ReadError::EmptyCell { place });
         }
         if row.comment && row.cells.get(0).is_some_and(|c| c.trim() != "#") {
@@ -174,5 +183,13 @@ impl<'a> Lines<'a> {
 
 fn cells(record: &StringRecord, separator: Separator) -> impl Iterator<Item = &str> {
     let blank = separator == Separator::Blank;
-    record.iter().map(str::trim).filter(move |cell| !blank || !cell.is_empty())
+    record.iter().map(trim).filter(move |cell| !blank || !cell.is_empty())
+}
+
+/// [`str::trim`], at once for the cells of one character that most cells are.
+fn trim(cell: &str) -> &str {
+    match cell.as_bytes() {
+        [byte] if byte.is_ascii_graphic() => cell,
+        _ => cell.trim(),
+    }
 }

@@ -27,10 +27,10 @@ pub fn write(array: &Array, symbols: Symbols, header: Header<'_>, out: impl Writ
     write_separated(array, symbols, header, Separator::Comma, out)
 }
 
-/// As [`write`], with a separator of choice ([`Separator::Blank`]: one blank).
+/// As [`write()`], with a separator of choice ([`Separator::Blank`]: one blank).
 ///
 /// # Errors
-/// As [`write`].
+/// As [`write()`].
 pub fn write_separated(
     array: &Array,
     symbols: Symbols,
