@@ -61,7 +61,8 @@ impl Output {
     /// as a device or a named pipe, is written to directly.
     pub(super) fn open(name: Option<&str>) -> Result<Self, Failure> {
         let Some(name) = name.filter(|n| *n != "-") else { return Ok(Self::Stdout) };
-        let fail = |e: io::Error| Failure::usage(format!("{name} cannot be written: {e}"));
+        // Only the kind: the whole message would name the temporary file.
+        let fail = |e: io::Error| Failure::usage(format!("{name} cannot be written: {}", e.kind()));
         let target = fs::canonicalize(name).unwrap_or_else(|_| name.into());
         match fs::metadata(&target) {
             Ok(known) if known.is_dir() => {

@@ -74,8 +74,8 @@ fn read_certificate(name: &str) -> Result<Certificate, Failure> {
 
 /// Builds the recipe anew; what differs becomes a mismatch of the report.
 fn check_recipe(certificate: &Certificate, array: &Array, report: &mut RecheckReport) -> RecipeCheck {
-    let Some(recipe) = &certificate.recipe else { return RecipeCheck::None };
     report.not_checked.retain(|&field| field != Field::Recipe);
+    let Some(recipe) = &certificate.recipe else { return RecipeCheck::None };
     let found = match rebuild(recipe, array) {
         Ok(sha256) if sha256 == digest::sha256(array) => return RecipeCheck::SameArray,
         Ok(sha256) => format!("it yields another array, sha256 {sha256}"),
@@ -121,7 +121,7 @@ fn verdict(report: &RecheckReport, recipe: &RecipeCheck) -> String {
     }
     lines.push((
         "next",
-        "judge the array itself with trysquare certify; trust this certificate in nothing".into(),
+        "judge the array itself with trysquare certify; do not rely on this certificate".into(),
     ));
     let rows: Vec<[String; 3]> =
         report.mismatches.iter().map(|m| [m.field.to_string(), m.stated.clone(), m.found.clone()]).collect();

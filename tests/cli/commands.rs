@@ -39,7 +39,7 @@ fn seek() {
     assert_snapshot!("seek_text", bench.show(&["seek", "3", "2", "--format", "text", "--symbols", "one"]));
     assert_snapshot!("seek_gap", bench.show(&["seek", "6^2 2^2", "--seed", "7"]));
     assert_snapshot!("seek_impossible", bench.show(&["seek", "2^1 3^7", "--max-runs", "17"]));
-    assert_snapshot!("seek_limit", bench.show(&["seek", "6^3", "--max-runs", "40"]));
+    assert_snapshot!("seek_limit", bench.show(&["seek", "6^4", "--max-runs", "40"]));
     assert_snapshot!("seek_single_factor", bench.show(&["seek", "5"]));
 }
 
@@ -57,7 +57,7 @@ fn seek_json() {
     );
     assert_snapshot!(
         "seek_json_limit",
-        bench.show(&["seek", "6^3", "--json", "--max-runs", "40", "--quiet"])
+        bench.show(&["seek", "6^4", "--json", "--max-runs", "40", "--quiet"])
     );
 }
 

@@ -44,7 +44,7 @@ fn what_was_written_can_be_read() {
 fn nothing_is_left_behind_when_there_is_no_array() {
     let bench = Bench::with("o", "what was there before");
     for max_runs in ["30", "40"] {
-        let arguments = ["seek", "6^3", "--max-runs", max_runs, "--out", "o", "--certificate", "c"];
+        let arguments = ["seek", "6^4", "--max-runs", max_runs, "--out", "o", "--certificate", "c"];
         assert_ne!(code(&bench.run(&arguments)), 0);
         assert_eq!(bench.files(), ["o"]);
         assert_eq!(bench.get("o"), "what was there before");
