@@ -5,6 +5,8 @@
 pub mod algebra;
 pub mod array;
 pub mod catalog;
+#[cfg(feature = "cli")]
+pub mod cli;
 pub mod construct;
 pub mod exchange;
 pub mod floor;

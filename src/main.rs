@@ -1,4 +1,6 @@
-//! The command line.
+//! The program `trysquare`; everything is in the library, see `trysquare::cli`.
 #![forbid(unsafe_code)]
 
-fn main() {}
+fn main() -> std::process::ExitCode {
+    trysquare::cli::run().into()
+}

@@ -3,6 +3,7 @@
 //! * [`csv`]: separated cells, the form to hand on and the form in which arrays arrive;
 //! * [`json`]: arrays of arrays, and the objects that Trysquare prints;
 //! * [`text`]: an aligned table for people;
+//! * [`document`]: the JSON objects that the commands print, for programs;
 //! * [`read_any`]: whatever it is.
 //!
 //! Reading guesses what a file is, says so in [`Received`], and refuses to guess where a wrong
@@ -12,6 +13,7 @@ mod columns;
 pub mod csv;
 mod decimal;
 mod detect;
+pub mod document;
 mod encoding;
 mod error;
 mod interpret;

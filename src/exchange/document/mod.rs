@@ -1,0 +1,26 @@
+//! The JSON objects that Trysquare prints, one file per kind.
+//!
+//! | type | printed by |
+//! | --- | --- |
+//! | [`SeekDocument`] | `seek --json`, `seek --batch` |
+//! | [`CertifyDocument`] | `certify --json` |
+//! | [`RecheckDocument`] | `recheck --json` |
+//! | [`FloorDocument`] | `floor --json` |
+//! | [`CatalogDocument`] | `catalog --json` |
+//!
+//! They borrow what they print, so an array is never copied. Keys are stable; the JSON Schemas in
+//! the folder `schema/` are generated from these types.
+
+mod catalog;
+mod certify;
+mod floor;
+mod recheck;
+mod seek;
+
+pub use catalog::CatalogDocument;
+pub use certify::{CertifyDocument, NamedWitness};
+pub use floor::{BoundDocument, FloorDocument};
+pub use recheck::{RecheckDocument, RecipeCheck};
+pub use seek::{
+    ErrorDocument, FloorPart, FoundDocument, NothingDocument, NothingVerdict, Rows, SeekDocument,
+};
