@@ -18,7 +18,7 @@ pub const PROOF_VERSION: u32 = 1;
 /// It rests on two parts: a bound that says N ≥ some least value, and a divisor of N; `runs` is
 /// the least value rounded up to a multiple of the divisor.
 #[derive(Clone, Debug, PartialEq, Eq, Serialize, Deserialize)]
-#[serde(deny_unknown_fields)]
+#[serde(deny_unknown_fields, expecting = "an object with the keys of a proof")]
 #[cfg_attr(feature = "schema", derive(schemars::JsonSchema))]
 pub struct Proof {
     /// [`PROOF_VERSION`].

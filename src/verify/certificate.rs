@@ -28,7 +28,7 @@ pub enum StrengthClaim {
 ///
 /// The JSON form carries every key; unknown keys are refused.
 #[derive(Clone, Debug, PartialEq, Eq, Serialize, Deserialize)]
-#[serde(deny_unknown_fields)]
+#[serde(deny_unknown_fields, expecting = "an object with the keys of a certificate")]
 #[cfg_attr(feature = "schema", derive(schemars::JsonSchema))]
 pub struct Certificate {
     /// The version of the format, [`CERTIFICATE_VERSION`].
@@ -113,6 +113,7 @@ impl Certificate {
     /// A [`CertificateError`] on anything but one whole certificate of this version.
     pub fn from_json(text: &str) -> Result<Self, CertificateError> {
         #[derive(Deserialize)]
+        #[serde(expecting = "an object with a version")]
         struct Version {
             version: u32,
         }
