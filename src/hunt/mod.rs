@@ -1,0 +1,20 @@
+//! Searches for what no theorem gives.
+//!
+//! | file | what it looks for |
+//! | --- | --- |
+//! | `circulants` | four rows for the array of Goethals and Seidel |
+//! | `t_matrices` | T-matrices, to be multiplied with Williamson's |
+//! | `write` | what was found as the text of a seed |
+//!
+//! Every search takes a seed and answers the same for the same request on every machine. What was
+//! found lies in `catalog/`; the line `source` there names the command, an example of this crate.
+
+mod circulants;
+mod random;
+mod t_matrices;
+mod write;
+
+pub use circulants::FourCirculants;
+pub use random::Random;
+pub use t_matrices::t_matrices;
+pub use write::{circulants_seed, scheme_seed};
