@@ -3,6 +3,7 @@
 //! | file | what it looks for |
 //! | --- | --- |
 //! | `circulants` | four rows for the array of Goethals and Seidel |
+//! | `schemes` | difference schemes with a prescribed symmetry |
 //! | `t_matrices` | T-matrices, to be multiplied with Williamson's |
 //! | `write` | what was found as the text of a seed |
 //!
@@ -11,10 +12,12 @@
 
 mod circulants;
 mod random;
+mod schemes;
 mod t_matrices;
 mod write;
 
 pub use circulants::FourCirculants;
 pub use random::Random;
+pub use schemes::{SchemeHunt, Symmetry};
 pub use t_matrices::t_matrices;
 pub use write::{circulants_seed, scheme_seed};

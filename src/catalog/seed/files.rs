@@ -61,6 +61,8 @@ embedded! {
     "scheme-15-07-05"
     "scheme-15-09-03"
     "scheme-20-09-04"
+    "scheme-20-10-04"
+    "scheme-21-12-03"
     "turyn-016"
     "turyn-020"
     "turyn-022"
