@@ -186,7 +186,20 @@ impl SchemeBook {
             }
         }
         self.direct_sums(r, s, &mut offer);
+        if best.columns < r {
+            self.images(r, s, &mut best);
+        }
         Some(best)
+    }
+
+    /// Offers the images of schemes over larger groups.
+    fn images(&self, r: u32, s: u32, best: &mut Best) {
+        for k in (2..=r / s).filter(|k| r.is_multiple_of(s * k)) {
+            if let Some(of) = self.best(r, s * k).filter(|of| of.columns > best.columns) {
+                let recipe = Arc::new(SchemeRecipe::Image { of: of.recipe, order: s });
+                *best = Best { columns: of.columns, recipe };
+            }
+        }
     }
 
     fn direct_sums(&self, r: u32, s: u32, offer: &mut impl FnMut(SchemeRecipe)) {
@@ -216,6 +229,21 @@ fn lock<T>(mutex: &Mutex<T>) -> std::sync::MutexGuard<'_, T> {
 #[cfg(test)]
 mod tests {
     use super::*;
+
+    /// The columns of the schemes with r ≤ 36 rows over groups of order s ≤ 7, and of those with index 1
+    /// up to 24, are at least those that `construct::scheme` states, and each is built and judged.
+    #[test]
+    fn scheme_columns() {
+        let book = SchemeBook::new(Arc::new(HadamardBook::new()));
+        let index_one = (2..=24).map(|s| (s, s));
+        for (r, s) in (2..=7).flat_map(|s| (s..=36).step_by(s as usize).map(move |r| (r, s))).chain(index_one) {
+            let best = book.best(r, s).unwrap();
+            let d = best.recipe.build().unwrap();
+            assert_eq!((d.rows(), d.columns()), (r as usize, best.columns as usize));
+            assert!(u32::from(d.order()) == s && d.is_difference_scheme(), "{r} {s}");
+            println!("r = {r}, s = {s}: {} columns, {}", best.columns, best.recipe);
+        }
+    }
 
     /// Every order up to 400 is built and judged; those up to 1000 that are not reached are printed
     /// and are those that `construct::hadamard` names.
