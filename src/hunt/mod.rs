@@ -1,7 +1,31 @@
-//! Searches by computation.
+//! Searches for what no theorem gives.
+//!
+//! | file | what it looks for |
+//! | --- | --- |
+//! | `blocks` | two-level columns beside one p-level column in 4p runs |
+//! | `circulants` | four rows for the array of Goethals and Seidel |
+//! | `latin` | quasi-difference matrices and V vectors |
+//! | `schemes` | difference schemes with a prescribed symmetry |
+//! | `subspaces` | subspaces of which any t are independent |
+//! | `symmetric` | arrays of strength 2 with a prescribed group |
+//! | `t_matrices` | T-matrices, to be multiplied with Williamson's |
+//! | `write` | what was found as the text of a seed |
+//!
+//! Every search takes a seed and answers the same for the same request on every machine. What was
+//! found lies in `catalog/`; the line `source` there names the command, an example of this crate.
 
 pub mod blocks;
+mod circulants;
+pub mod latin;
 mod random;
+mod schemes;
+pub mod subspaces;
 pub mod symmetric;
+mod t_matrices;
+mod write;
 
+pub use circulants::FourCirculants;
 pub use random::Random;
+pub use schemes::{SchemeHunt, Symmetry};
+pub use t_matrices::t_matrices;
+pub use write::{circulants_seed, scheme_seed};

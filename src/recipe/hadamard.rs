@@ -29,6 +29,13 @@ pub enum HadamardRecipe {
         /// q.
         q: u32,
     },
+    /// Order 4q, q ≡ 1 mod 4, from a matrix of order q − 1 (Miyamoto 1991).
+    Miyamoto {
+        /// q.
+        q: u32,
+        /// The matrix of order q − 1.
+        inner: Arc<HadamardRecipe>,
+    },
     /// The Kronecker product of two matrices.
     Kronecker {
         /// The outer matrix.
@@ -56,6 +63,7 @@ impl HadamardRecipe {
             Self::Sylvester { k } => 1u32.checked_shl(*k),
             Self::PaleyOne { q } => q.checked_add(1),
             Self::PaleyTwo { q } => q.checked_add(1)?.checked_mul(2),
+            Self::Miyamoto { q, .. } => q.checked_mul(4),
             Self::Kronecker { left, right } => left.order()?.checked_mul(right.order()?),
             Self::FourCirculants { rows } => u32::try_from(rows[0].len()).ok()?.checked_mul(4),
             Self::TurynType { sequences } => {
@@ -73,6 +81,7 @@ impl HadamardRecipe {
             Self::Sylvester { k } => hadamard::sylvester(*k)?,
             Self::PaleyOne { q } => hadamard::paley_one(*q)?,
             Self::PaleyTwo { q } => hadamard::paley_two(*q)?,
+            Self::Miyamoto { q, inner } => hadamard::miyamoto(*q, &inner.build()?)?,
             Self::Kronecker { left, right } => hadamard::kronecker(&left.build()?, &right.build()?)?,
             Self::FourCirculants { rows } => {
                 let [a, b, c, d] = rows.each_ref().map(|r| signs(r));
@@ -104,6 +113,7 @@ impl fmt::Display for HadamardRecipe {
             Self::Sylvester { .. } => write!(f, " of Sylvester"),
             Self::PaleyOne { q } => write!(f, " of Paley, first kind over GF({q})"),
             Self::PaleyTwo { q } => write!(f, " of Paley, second kind over GF({q})"),
+            Self::Miyamoto { q, inner } => write!(f, " of Miyamoto over GF({q}) from {}", inner.short()),
             Self::Kronecker { left, right } => write!(f, " = {} ⊗ {}", left.short(), right.short()),
             Self::FourCirculants { .. } => write!(f, " of Goethals and Seidel"),
             Self::TurynType { .. } => write!(f, " from Turyn-type sequences"),

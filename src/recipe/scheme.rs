@@ -60,6 +60,13 @@ pub enum SchemeRecipe {
         /// The right scheme.
         right: Arc<SchemeRecipe>,
     },
+    /// The image under the homomorphism onto a quotient of the group.
+    Image {
+        /// The scheme.
+        of: Arc<SchemeRecipe>,
+        /// The order of the quotient.
+        order: u32,
+    },
     /// The columns of a stored scheme.
     Starter {
         /// The cyclic factors of the group.
@@ -119,6 +126,11 @@ impl SchemeRecipe {
                     order: l.order.checked_mul(r.order)?,
                 }
             }
+            Self::Image { of, order } => {
+                let of = of.shape()?;
+                let divides = *order >= 2 && of.order.is_multiple_of(*order);
+                Shape { order: divides.then_some(*order)?, ..of }
+            }
             Self::Starter { group, columns } => Shape {
                 rows: u32::try_from(columns.first()?.len()).ok()?,
                 columns: u32::try_from(columns.len()).ok()?,
@@ -143,6 +155,7 @@ impl SchemeRecipe {
             Self::Hadamard { matrix } => scheme::from_hadamard(&matrix.build()?)?,
             Self::KroneckerSum { left, right } => scheme::kronecker_sum(&left.build()?, &right.build()?)?,
             Self::DirectSum { left, right } => scheme::direct_sum(&left.build()?, &right.build()?)?,
+            Self::Image { of, order } => scheme::image(&of.build()?, super::build::level(*order)?)?,
             Self::Starter { group, columns } => scheme::from_starter(group, columns)?,
         })
     }
@@ -160,6 +173,7 @@ impl fmt::Display for SchemeRecipe {
             Self::Hadamard { matrix } => write!(f, " from {matrix}"),
             Self::KroneckerSum { left, right } => write!(f, " = {} ⊕ {}", left.short(), right.short()),
             Self::DirectSum { left, right } => write!(f, " = {} × {}", left.short(), right.short()),
+            Self::Image { of, .. } => write!(f, " as the image of {}", of.short()),
             Self::Starter { .. } => write!(f, ", stored"),
         }
     }

@@ -12,12 +12,14 @@
 //! | a product of two orders that are known | [`kronecker`] |
 //! | 4m otherwise | [`goethals_seidel`] from four rows that somebody found (Williamson's are the symmetric ones) |
 //! | 4(3n − 1) otherwise | [`turyn_type`] from a set of Turyn-type sequences |
+//! | 4tw, t and w coprime | [`cooper_wallis`] from T-matrices of order t and Williamson's of order w |
 //!
 //! The first five need nothing but the order. Where several reach the same order they give
 //! matrices that are in general not equivalent; prefer the row that stands higher, which costs
-//! less and has the larger group of symmetries. The data for the last two are arguments; those
+//! less and has the larger group of symmetries. The data for the last three are arguments; those
 //! known to the project lie in the folder `catalog/`.
 
+mod cooper_wallis;
 mod four_circulants;
 mod kronecker;
 mod matrix;
@@ -27,6 +29,7 @@ mod paley_two;
 mod sylvester;
 mod turyn;
 
+pub use cooper_wallis::cooper_wallis;
 pub use four_circulants::goethals_seidel;
 pub use kronecker::kronecker;
 pub use matrix::{Hadamard, MAX_ORDER};
@@ -34,7 +37,7 @@ pub use miyamoto::miyamoto;
 pub use paley_one::paley_one;
 pub use paley_two::paley_two;
 pub use sylvester::sylvester;
-pub use turyn::turyn_type;
+pub use turyn::{t_sequences, turyn_type};
 
 use super::ConstructError;
 use crate::algebra::Field;

@@ -36,6 +36,28 @@ use crate::construct::ConstructError;
 /// # Ok::<(), Box<dyn std::error::Error>>(())
 /// ```
 pub fn turyn_type(x: &[i8], y: &[i8], z: &[i8], w: &[i8]) -> Result<Hadamard, ConstructError> {
+    let [t1, t2, t3, t4] = t_sequences(x, y, z, w)?;
+    let row = |s: [i8; 4]| -> Vec<i8> {
+        (0..t1.len()).map(|i| s[0] * t1[i] + s[1] * t2[i] + s[2] * t3[i] + s[3] * t4[i]).collect()
+    };
+    goethals_seidel([&row([1, 1, 1, 1]), &row([-1, 1, 1, -1]), &row([-1, -1, 1, 1]), &row([-1, 1, -1, 1])])
+}
+
+/// The T-sequences of length 3n − 1 that [`turyn_type`] makes of Turyn-type sequences X, Y, Z, W.
+///
+/// Four sequences over 0, ±1, exactly one of them non-zero at each place, whose aperiodic (hence
+/// also periodic) autocorrelations sum to zero at every shift.
+///
+/// # Errors
+/// As [`turyn_type`], whose conditions and references apply.
+///
+/// ```
+/// use trysquare::construct::hadamard::t_sequences;
+/// let t = t_sequences(&[1, 1], &[1, 1], &[1, -1], &[1])?;
+/// assert_eq!(t, [[1, -1, 0, 0, 0], [0, 0, 1, 0, 0], [0, 0, 0, 1, 1], [0, 0, 0, 0, 0]]);
+/// # Ok::<(), trysquare::construct::ConstructError>(())
+/// ```
+pub fn t_sequences(x: &[i8], y: &[i8], z: &[i8], w: &[i8]) -> Result<[Vec<i8>; 4], ConstructError> {
     const NAME: &str = "Turyn-type sequences";
     let n = x.len();
     if n == 0 || y.len() != n || z.len() != n || w.len() != n - 1 || n > MAX_ORDER / 12 {
@@ -66,16 +88,6 @@ pub fn turyn_type(x: &[i8], y: &[i8], z: &[i8], w: &[i8]) -> Result<Hadamard, Co
             ));
         }
     }
-    let [t1, t2, t3, t4] = t_sequences(x, y, z, w);
-    let row = |s: [i8; 4]| -> Vec<i8> {
-        (0..t1.len()).map(|i| s[0] * t1[i] + s[1] * t2[i] + s[2] * t3[i] + s[3] * t4[i]).collect()
-    };
-    goethals_seidel([&row([1, 1, 1, 1]), &row([-1, 1, 1, -1]), &row([-1, -1, 1, 1]), &row([-1, 1, -1, 1])])
-}
-
-/// Four sequences over 0, ±1, exactly one of them non-zero at each place.
-fn t_sequences(x: &[i8], y: &[i8], z: &[i8], w: &[i8]) -> [Vec<i8>; 4] {
-    let n = x.len();
     let mut t = [(); 4].map(|()| vec![0i8; 3 * n - 1]);
     t[0][..n].copy_from_slice(z);
     t[1][n..2 * n - 1].copy_from_slice(w);
@@ -83,7 +95,7 @@ fn t_sequences(x: &[i8], y: &[i8], z: &[i8], w: &[i8]) -> [Vec<i8>; 4] {
         t[2][2 * n - 1 + i] = (x[i] + y[i]) / 2;
         t[3][2 * n - 1 + i] = (x[i] - y[i]) / 2;
     }
-    t
+    Ok(t)
 }
 
 /// N(k): the sum of s\[i\]·s\[i + k\] over the places where both exist.
