@@ -1,0 +1,3 @@
+//! Searches for starters and arrays.
+
+pub mod latin;
