@@ -8,6 +8,8 @@ mod quasi_difference;
 mod random;
 mod space;
 mod symmetry;
+#[cfg(test)]
+mod tests;
 mod v_vector;
 
 pub use quasi_difference::{QuasiDifferenceSearch, quasi_difference_matrix};
