@@ -64,12 +64,8 @@ fn does_not_find_what_there_is_not() {
 /// section III.3.6, as `catalog/` has them.
 #[test]
 fn the_least_v_vectors_are_those_of_the_handbook() {
-    let handbook: [(u16, u16, &[u16]); 4] = [
-        (2, 3, &[0, 1, 4]),
-        (4, 9, &[0, 1, 3, 2, 8]),
-        (6, 7, &[0, 1, 3, 16, 35, 26, 36]),
-        (8, 9, &[0, 1, 20, 70, 23, 59, 3, 8, 19]),
-    ];
+    let handbook: [(u16, u16, &[u16]); 3] =
+        [(2, 3, &[0, 1, 4]), (4, 9, &[0, 1, 3, 2, 8]), (6, 7, &[0, 1, 3, 16, 35, 26, 36])];
     for (m, t, vector) in handbook {
         assert_eq!(least_v_vector(m, t, u64::MAX).unwrap().as_deref(), Some(vector));
     }
@@ -80,6 +76,13 @@ fn the_least_v_vectors_are_those_of_the_handbook() {
     }
     assert_eq!(least_v_vector(8, 9, 100), Ok(None), "the limit counts");
     assert!(least_v_vector(5, 1, 100).is_err());
+}
+
+#[test]
+#[ignore = "several seconds"]
+fn the_least_vector_with_eight_squares() {
+    let vector = least_v_vector(8, 9, u64::MAX).unwrap();
+    assert_eq!(vector.as_deref(), Some(&[0, 1, 20, 70, 23, 59, 3, 8, 19][..]));
 }
 
 #[test]
