@@ -4,6 +4,7 @@
 //! | --- | --- |
 //! | `seed` | the stored starters of the folder `catalog/` |
 //! | `books` | which Hadamard matrices and difference schemes can be had |
+//! | `latin_book` | how many mutually orthogonal Latin squares can be had |
 //! | `strength_two`, `strength_three`, `strength_any` | the families and compositions offered at N runs |
 //! | `compositions` | products and juxtaposition, which keep any strength |
 //! | `fit` | the exact packing of a mix into a parent |
@@ -17,6 +18,7 @@ mod books;
 mod candidates;
 mod compositions;
 mod fit;
+mod latin_book;
 pub mod seed;
 mod shelf;
 mod strength_any;
@@ -27,4 +29,5 @@ pub use arrange::arrange;
 pub use bag::Bag;
 pub use books::{Best, HadamardBook, SchemeBook, standard_group};
 pub use fit::{Host, Packer, Placement};
+pub use latin_book::LatinBook;
 pub use shelf::{CLOSED, Parent, Shelf, Variant};

@@ -8,6 +8,7 @@ use super::bag::Bag;
 use super::books::{HadamardBook, SchemeBook};
 use super::candidates::Candidates;
 use super::fit::{Host, Packer, Placement};
+use super::latin_book::LatinBook;
 use super::{strength_any, strength_three, strength_two};
 use crate::recipe::Recipe;
 
@@ -68,6 +69,8 @@ pub struct Shelf {
     pub hadamard: Arc<HadamardBook>,
     /// The difference schemes.
     pub schemes: SchemeBook,
+    /// The mutually orthogonal Latin squares.
+    pub latin: LatinBook,
     parents: Memo<Arc<Parent>>,
     variants: Memo<Variant>,
 }
@@ -86,6 +89,7 @@ impl Shelf {
         Self {
             schemes: SchemeBook::new(Arc::clone(&hadamard)),
             hadamard,
+            latin: LatinBook::new(),
             parents: Mutex::default(),
             variants: Mutex::default(),
         }

@@ -14,6 +14,7 @@ pub(super) fn collect<'a>(shelf: &'a Shelf, runs: u64, candidates: &mut Candidat
     let Ok(n) = u32::try_from(runs) else { return };
     families(shelf, n, candidates);
     developed(shelf, n, candidates);
+    latin_squares(shelf, n, candidates);
     merging_products(shelf, n, candidates);
     if runs <= CLOSED {
         kronecker_sums(shelf, n, candidates);
@@ -76,6 +77,15 @@ fn developed<'a>(shelf: &'a Shelf, n: u32, candidates: &mut Candidates<'a>) {
         let source = "difference scheme (Bose & Bush 1952)";
         candidates.offer(bag, source, move || Arc::new(Recipe::Developed { scheme: best.recipe }));
     }
+}
+
+/// Mutually orthogonal Latin squares when the number of runs is a square.
+fn latin_squares<'a>(shelf: &'a Shelf, runs: u32, candidates: &mut Candidates<'a>) {
+    let n = runs.isqrt();
+    let (Ok(level), true) = (u16::try_from(n), n * n == runs) else { return };
+    let Some((recipe, source)) = shelf.latin.recipe(level, &shelf.schemes) else { return };
+    let bag = Bag::from_pairs([(level, shelf.latin.factors(level, &shelf.schemes))]);
+    candidates.offer(bag, &source, move || recipe);
 }
 
 /// Methods of Wang & Wu 1991, with the zero columns kept and given up.

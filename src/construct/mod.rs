@@ -7,6 +7,7 @@
 pub mod compose;
 pub mod field;
 pub mod hadamard;
+pub mod latin;
 pub mod scheme;
 pub mod strength3;
 #[cfg(test)]

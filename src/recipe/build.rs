@@ -5,7 +5,7 @@ use crate::array::Array;
 use crate::construct::compose::{self, DifferenceBlock};
 use crate::construct::hadamard::Hadamard;
 use crate::construct::scheme::{self, Scheme};
-use crate::construct::{OrbitColumn, field, orbit_array, strength3};
+use crate::construct::{OrbitColumn, field, latin, orbit_array, strength3};
 
 /// A recipe nested deeper than this is refused.
 pub(super) const MAX_DEPTH: usize = 64;
@@ -48,6 +48,23 @@ impl Recipe {
             }
             Self::Hadamard { matrix } => matrix.build()?.to_array()?,
             Self::Developed { scheme } => scheme::developed_with_rows(&scheme.build()?)?,
+            Self::QuasiDifference { group, permutation, columns, fill } => {
+                let fill = fill.as_deref().map(sub).transpose()?;
+                let matrix = latin::QuasiDifference::expanded(group, permutation, columns)?;
+                latin::quasi_difference(&matrix, fill.as_ref())?
+            }
+            Self::VVector { m, t, vector, fill } => {
+                let fill = fill.as_deref().map(sub).transpose()?;
+                latin::quasi_difference(&latin::v_vector(*m, *t, vector)?, fill.as_ref())?
+            }
+            Self::Wilson { factors, master, truncated, parts, fills } => {
+                let parts = parts.iter().map(|p| sub(p)).collect::<Result<Vec<_>, _>>()?;
+                let fills =
+                    fills.iter().map(|f| f.as_deref().map(sub).transpose()).collect::<Result<Vec<_>, _>>()?;
+                let (parts, fills): (Vec<_>, Vec<_>) =
+                    (parts.iter().collect(), fills.iter().map(Option::as_ref).collect());
+                latin::wilson(*factors as usize, &sub(master)?, truncated, &parts, &fills)?
+            }
             Self::KroneckerSum { of, schemes, beside } => {
                 let schemes = build_schemes(schemes)?;
                 let blocks = blocks(&schemes)?;

@@ -135,6 +135,47 @@ pub enum Recipe {
         /// The scheme.
         scheme: Arc<SchemeRecipe>,
     },
+    /// k factors of n + u levels in (n + u)² runs from an (n, k; 1, 1; u) quasi-difference matrix,
+    /// strength 2.
+    QuasiDifference {
+        /// The cyclic factors of the group of order n.
+        group: Vec<u16>,
+        /// For each row of an image of a column the row it is taken from.
+        permutation: Vec<u16>,
+        /// The base columns, which stand for their images under the powers of the permutation;
+        /// null is an empty place.
+        columns: Vec<Vec<Option<u16>>>,
+        /// For u ≥ 2 the array on u levels that fills the hole.
+        #[serde(default, skip_serializing_if = "Option::is_none")]
+        fill: Option<Arc<Recipe>>,
+    },
+    /// m + 2 factors of n = (m + 1)t + 1 levels in n² runs from a V(m, t) vector, strength 2.
+    VVector {
+        /// m.
+        m: u16,
+        /// t.
+        t: u16,
+        /// a_1 … a_{m+1}, elements of GF(mt + 1).
+        vector: Vec<u16>,
+        /// For t ≥ 2 the array on t levels that fills the hole.
+        #[serde(default, skip_serializing_if = "Option::is_none")]
+        fill: Option<Arc<Recipe>>,
+    },
+    /// Factors of n = mt + u_1 + … + u_r levels in n² runs, r = 1 or 2: a transversal design on t
+    /// points inflated m times with r more groups truncated (Wilson 1974). Strength 2.
+    Wilson {
+        /// The number of factors.
+        factors: u32,
+        /// The design on t points; its first factors are the groups of the result, then come
+        /// those that are truncated.
+        master: Arc<Recipe>,
+        /// u_1 … u_r.
+        truncated: Vec<u16>,
+        /// The arrays on m, m + 1, …, m + r levels.
+        parts: Vec<Arc<Recipe>>,
+        /// The arrays on u_1 … u_r levels, absent for one level.
+        fills: Vec<Option<Arc<Recipe>>>,
+    },
     /// The generalised Kronecker sum (Wang & Wu 1991): each column of `of` times the columns of
     /// the scheme over a group of its order, then the columns of `beside`. Strength 2.
     KroneckerSum {

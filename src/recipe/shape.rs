@@ -4,7 +4,7 @@ use std::sync::Arc;
 
 use super::build::{MAX_DEPTH, indices, level, named_column, pair_indices};
 use super::{Recipe, RecipeError, SchemeRecipe, Shape, Signs, Split};
-use crate::construct::{compose, strength3};
+use crate::construct::{compose, latin, strength3};
 use crate::mix::Mix;
 
 fn wrong(what: impl Into<String>) -> RecipeError {
@@ -80,6 +80,21 @@ impl Recipe {
                 let mut levels = vec![level(order)?; columns as usize];
                 levels.push(level(rows)?);
                 levels
+            }
+            Self::QuasiDifference { permutation, .. } => {
+                let (n, u) = quasi_difference_shape(self)?;
+                latin::quasi_difference_levels(n, u, permutation.len())?
+            }
+            Self::VVector { m, t, .. } => {
+                let (m, t) = (usize::from(*m), usize::from(*t));
+                latin::quasi_difference_levels(m * t + 1, t, m + 2)?
+            }
+            Self::Wilson { factors, master, truncated, parts, .. } => {
+                let first = |recipe: &Recipe| -> Result<usize, RecipeError> {
+                    sub(recipe)?.first().map(|&s| usize::from(s)).ok_or_else(|| wrong("no factor"))
+                };
+                let m = first(parts.first().ok_or_else(|| wrong("no part"))?)?;
+                latin::wilson_levels(*factors as usize, first(master)?, m, truncated)?
             }
             Self::KroneckerSum { of, schemes, beside } => {
                 compose::kronecker_sum_levels(&sub(of)?, &block_shapes(schemes)?, &sub(beside)?)?
@@ -169,6 +184,11 @@ impl Recipe {
                 let shape = shape(scheme)?;
                 times(shape.rows as usize, shape.order as usize)
             }
+            Self::QuasiDifference { .. } | Self::VVector { .. } | Self::Wilson { .. } => {
+                let levels = self.levels_at(depth)?;
+                let n = usize::from(*levels.first().ok_or_else(|| wrong("no factor"))?);
+                times(n, n)
+            }
             Self::KroneckerSum { of, beside, .. } => times(sub(of)?, sub(beside)?),
             Self::ZeroColumn { of, schemes } => {
                 let rows = schemes.first().map(|s| shape(s)).ok_or_else(|| wrong("no scheme"))??.rows;
@@ -204,6 +224,9 @@ impl Recipe {
             | Self::BlockTypes { .. }
             | Self::Hadamard { .. }
             | Self::Developed { .. }
+            | Self::QuasiDifference { .. }
+            | Self::VVector { .. }
+            | Self::Wilson { .. }
             | Self::KroneckerSum { .. }
             | Self::ZeroColumn { .. }
             | Self::MergingProduct { .. }
@@ -266,6 +289,29 @@ fn shape(scheme: &SchemeRecipe) -> Result<Shape, RecipeError> {
         .shape()
         .filter(|s| s.columns as usize <= crate::mix::MAX_FACTORS)
         .ok_or_else(|| wrong("a difference scheme whose parts do not fit together"))
+}
+
+/// n and u of a [`Recipe::QuasiDifference`]: an image of a base column has its empty place in each row
+/// of one cycle of the permutation as often as the order of the permutation says.
+fn quasi_difference_shape(recipe: &Recipe) -> Result<(usize, usize), RecipeError> {
+    let Recipe::QuasiDifference { group, permutation, columns, .. } = recipe else {
+        return Err(wrong("no quasi-difference matrix"));
+    };
+    let n = group.iter().try_fold(1usize, |n, &g| n.checked_mul(usize::from(g)));
+    let n = n.filter(|&n| n <= usize::from(u16::MAX)).ok_or_else(|| wrong("no group"))?;
+    let k = permutation.len();
+    let mut power: Vec<usize> = (0..k).collect();
+    let mut empty = 0;
+    for _ in 0..3 * n {
+        empty += columns.iter().filter(|c| power.first().is_some_and(|&r| c.get(r) == Some(&None))).count();
+        for r in &mut power {
+            *r = permutation.get(*r).map_or(k, |&to| usize::from(to));
+        }
+        if power.iter().copied().eq(0..k) {
+            return Ok((n, empty));
+        }
+    }
+    Err(wrong("a permutation of an order that does not fit the columns"))
 }
 
 fn block_shapes(schemes: &[Arc<SchemeRecipe>]) -> Result<Vec<(u16, usize)>, RecipeError> {

@@ -46,6 +46,26 @@ impl fmt::Display for Recipe {
                 }
                 _ => write!(f, "{scheme}, with its rows as a factor"),
             },
+            Self::QuasiDifference { group, permutation, fill, .. } => {
+                let group: Vec<String> = group.iter().map(|n| format!("Z{n}")).collect();
+                write!(f, "quasi-difference matrix of {} rows over {}", permutation.len(), group.join("x"))?;
+                filled(f, fill.as_deref())
+            }
+            Self::VVector { m, t, fill, .. } => {
+                write!(f, "V({m},{t}) vector")?;
+                filled(f, fill.as_deref())
+            }
+            Self::Wilson { master, truncated, parts, .. } => {
+                write!(f, "Wilson's inflation of [{master}], truncated to ")?;
+                for (i, u) in truncated.iter().enumerate() {
+                    write!(f, "{}{u}", if i > 0 { " and " } else { "" })?;
+                }
+                write!(f, ", by ")?;
+                for (i, part) in parts.iter().enumerate() {
+                    write!(f, "{}[{part}]", if i > 0 { ", " } else { "" })?;
+                }
+                Ok(())
+            }
             Self::KroneckerSum { of, schemes, beside } => {
                 write!(f, "[{of}]")?;
                 for scheme in schemes.iter().filter(|s| s.shape().is_some_and(|s| s.columns > 1)) {
@@ -103,6 +123,10 @@ impl fmt::Display for Recipe {
             Self::Copies { of, times, .. } => write!(f, "{times} copies of [{of}]"),
         }
     }
+}
+
+fn filled(f: &mut fmt::Formatter<'_>, fill: Option<&Recipe>) -> fmt::Result {
+    fill.map_or(Ok(()), |fill| write!(f, ", its hole filled by [{fill}]"))
 }
 
 fn plural(n: usize) -> &'static str {

@@ -10,6 +10,7 @@ use std::iter;
 
 use crate::construct::ConstructError;
 use crate::construct::hadamard::{Hadamard, goethals_seidel, turyn_type};
+use crate::construct::latin::{QuasiDifference, v_vector};
 use crate::construct::scheme::{Scheme, from_starter};
 
 pub use parse::{SeedError, SeedReason};
@@ -102,6 +103,34 @@ impl Seed {
             _ => None,
         }
     }
+
+    /// The quasi-difference matrix this seed stands for, `None` when it is of another kind.
+    ///
+    /// # Errors
+    /// The inner result is that of [`QuasiDifference::expanded`] or [`v_vector`].
+    #[must_use]
+    pub fn quasi_difference(&self) -> Option<Result<QuasiDifference, ConstructError>> {
+        match &self.kind {
+            SeedKind::VVector { m, t, vector } => Some(v_vector(*m, *t, vector)),
+            SeedKind::QuasiDifference { group, permutation, columns, .. } => {
+                Some(QuasiDifference::expanded(group, permutation, columns))
+            }
+            _ => None,
+        }
+    }
+}
+
+/// The parameters of a quasi-difference matrix on the shelf.
+#[derive(Clone, Copy, Debug, PartialEq, Eq)]
+pub struct QuasiDifferenceEntry {
+    /// The name of the seed, for [`find`].
+    pub name: &'static str,
+    /// n, the order of the group.
+    pub order: usize,
+    /// k, the number of rows.
+    pub rows: usize,
+    /// u, the number of empty places in each row.
+    pub empty: usize,
 }
 
 /// The parameters of a difference scheme on the shelf.
@@ -168,6 +197,24 @@ pub fn hadamard_orders() -> impl Iterator<Item = HadamardEntry> {
             _ => return None,
         };
         Some(HadamardEntry { name, order })
+    })
+}
+
+/// The quasi-difference matrices on the shelf, also from V(m, t) vectors, in the order of their names;
+/// only keys are read.
+pub fn quasi_differences() -> impl Iterator<Item = QuasiDifferenceEntry> {
+    parameters().filter_map(|(name, parameters)| match parameters {
+        Parameters::VVector { m, t } => {
+            let (m, t) = (usize::from(m), usize::from(t));
+            Some(QuasiDifferenceEntry { name, order: m * t + 1, rows: m + 2, empty: t })
+        }
+        Parameters::QuasiDifference { group, rows, empty, .. } => Some(QuasiDifferenceEntry {
+            name,
+            order: group.iter().map(|&g| usize::from(g)).product(),
+            rows: usize::from(rows),
+            empty: usize::from(empty),
+        }),
+        _ => None,
     })
 }
 

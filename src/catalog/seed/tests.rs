@@ -96,6 +96,8 @@ fn every_seed_is_what_it_says() {
         } else {
             let (group, empty, columns) = quasi_difference_matrix(&seed.kind).unwrap();
             check_quasi_difference(name, &group, empty, &columns);
+            let built = seed.quasi_difference().unwrap().unwrap();
+            assert_eq!((built.group(), built.columns()), (&group, &columns[..]), "{name}");
             lines(columns[0].len(), columns.len(), " ", |i, j| {
                 columns[j][i].map_or_else(|| "-".to_owned(), |e| e.to_string())
             })
@@ -159,7 +161,11 @@ fn lookups_agree_with_the_seeds() {
     }
     assert_eq!(count.0, all().iter().filter(|s| s.scheme().is_some()).count());
     assert_eq!(count.1, all().iter().filter(|s| s.hadamard().is_some()).count());
-    assert_eq!(count, (16, 44));
+    assert_eq!(count, (18, 44));
+    for entry in quasi_differences() {
+        let d = find(entry.name).unwrap().quasi_difference().unwrap().unwrap();
+        assert_eq!((d.group().order() as usize, d.rows(), d.empty()), (entry.order, entry.rows, entry.empty));
+    }
 }
 
 #[test]
@@ -309,7 +315,7 @@ proptest! {
         };
         match damaged.parse::<Seed>() {
             Ok(seed) => {
-                let _ = (seed.scheme(), seed.hadamard());
+                let _ = (seed.scheme(), seed.hadamard(), seed.quasi_difference());
             }
             Err(e) => prop_assert!(!e.to_string().is_empty()),
         }
