@@ -8,6 +8,7 @@ pub mod catalog;
 pub mod construct;
 pub mod exchange;
 pub mod floor;
+pub mod hunt;
 pub mod mix;
 pub mod recipe;
 pub mod seek;

@@ -1,0 +1,3 @@
+//! Searches for what no recipe yields.
+
+pub mod subspaces;
