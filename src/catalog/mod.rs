@@ -5,6 +5,7 @@
 //! | `seed` | the stored starters of the folder `catalog/` |
 //! | `books` | which Hadamard matrices and difference schemes can be had |
 //! | `strength_two`, `strength_three`, `strength_any` | the families and compositions offered at N runs |
+//! | `stored` | stored arrays and codes |
 //! | `compositions` | products and juxtaposition, which keep any strength |
 //! | `fit` | the exact packing of a mix into a parent |
 //! | `candidates` | the maximal ones among the mixes offered |
@@ -19,6 +20,7 @@ mod compositions;
 mod fit;
 pub mod seed;
 mod shelf;
+mod stored;
 mod strength_any;
 mod strength_three;
 mod strength_two;

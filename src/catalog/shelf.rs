@@ -8,6 +8,7 @@ use super::bag::Bag;
 use super::books::{HadamardBook, SchemeBook};
 use super::candidates::Candidates;
 use super::fit::{Host, Packer, Placement};
+use super::stored::StoredArrays;
 use super::{strength_any, strength_three, strength_two};
 use crate::recipe::Recipe;
 
@@ -68,6 +69,7 @@ pub struct Shelf {
     pub hadamard: Arc<HadamardBook>,
     /// The difference schemes.
     pub schemes: SchemeBook,
+    stored: StoredArrays,
     parents: Memo<Arc<Parent>>,
     variants: Memo<Variant>,
 }
@@ -86,6 +88,7 @@ impl Shelf {
         Self {
             schemes: SchemeBook::new(Arc::clone(&hadamard)),
             hadamard,
+            stored: StoredArrays::new(),
             parents: Mutex::default(),
             variants: Mutex::default(),
         }
@@ -110,6 +113,7 @@ impl Shelf {
             3 => strength_three::collect(self, runs, &mut candidates),
             _ => strength_any::collect(self, runs, strength, &mut candidates),
         }
+        self.stored.offer(runs, strength, &mut candidates);
         let packer = Packer::new(self, strength);
         let found = Arc::new(candidates.maximal(&packer));
         lock(&self.parents).entry(key).or_insert(found).clone()

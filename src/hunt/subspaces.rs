@@ -6,9 +6,10 @@
 //! at last points, as long as something fits. At each step the best of a few random orbits is
 //! taken, the one that leaves the most. Nothing is proved when nothing is found.
 
-use std::collections::{BTreeMap, HashMap, HashSet};
+use std::collections::{BTreeMap, HashSet};
 
-use crate::algebra::{AlgebraError, Field, vector};
+use super::random::Random;
+use crate::algebra::{AlgebraError, Field, divisors, dot, rank, vector};
 
 /// No more points than this: the spaces of interest have at most 364 (PG(5, 3)).
 const MAX_POINTS: usize = 384;
@@ -53,7 +54,7 @@ pub struct Packing {
 }
 
 /// What to look for.
-#[derive(Clone, Copy, Debug, PartialEq, Eq)]
+#[derive(Clone, Debug, PartialEq, Eq)]
 pub struct Wanted {
     /// The order of the field.
     pub q: u32,
@@ -63,6 +64,9 @@ pub struct Wanted {
     pub strength: usize,
     /// The largest dimension of a subspace.
     pub largest: u32,
+    /// No more than so many subspaces of dimension 1, 2, …; dimensions beyond the list, and points,
+    /// are limited at random or not at all.
+    pub limits: Vec<u32>,
     /// The smallest and the largest order of the group.
     pub orders: (u32, u32),
     /// How many groups are tried.
@@ -84,7 +88,9 @@ pub struct Wanted {
 ///
 /// ```
 /// use trysquare::hunt::subspaces::{Wanted, packings};
-/// let wanted = Wanted { q: 2, n: 4, strength: 2, largest: 2, orders: (1, 5), groups: 9, tries: 9, seed: 1 };
+/// let wanted = Wanted {
+///     q: 2, n: 4, strength: 2, largest: 2, limits: vec![], orders: (1, 5), groups: 9, tries: 9, seed: 1,
+/// };
 /// let found = packings(&wanted)?.expect("a small space");
 /// assert!(found.iter().any(|p| p.counts == [0, 5]), "the spread of PG(3, 2)");
 /// # Ok::<(), trysquare::algebra::AlgebraError>(())
@@ -92,7 +98,8 @@ pub struct Wanted {
 pub fn packings(wanted: &Wanted) -> Result<Option<Vec<Packing>>, AlgebraError> {
     let field = Field::new(wanted.q)?;
     let small = wanted.q.checked_pow(wanted.n).is_some_and(|v| (v - 1) / (wanted.q - 1) <= MAX_POINTS as u32);
-    if !small || wanted.strength < 2 || wanted.largest == 0 || (wanted.strength > 3 && wanted.largest > 1) {
+    let sensible = (1..=wanted.n).contains(&wanted.largest);
+    if !small || !sensible || wanted.strength < 2 || (wanted.strength > 3 && wanted.largest > 1) {
         return Ok(None);
     }
     let space = Space::new(&field, wanted.n as usize);
@@ -111,23 +118,6 @@ pub fn packings(wanted: &Wanted) -> Result<Option<Vec<Packing>>, AlgebraError> {
         }
     }
     Ok(Some(best.into_values().collect()))
-}
-
-/// SplitMix64 (Steele, Lea & Flood 2014).
-struct Random(u64);
-
-impl Random {
-    fn next(&mut self) -> u64 {
-        self.0 = self.0.wrapping_add(0x9e37_79b9_7f4a_7c15);
-        let mut z = self.0;
-        z = (z ^ (z >> 30)).wrapping_mul(0xbf58_476d_1ce4_e5b9);
-        z = (z ^ (z >> 27)).wrapping_mul(0x94d0_49bb_1331_11eb);
-        z ^ (z >> 31)
-    }
-
-    fn below(&mut self, n: usize) -> usize {
-        (self.next() % n as u64) as usize
-    }
 }
 
 /// The points of PG(n − 1, q) and what is needed of them.
@@ -225,18 +215,18 @@ impl<'f> Space<'f> {
             let rows: Vec<Vec<u16>> =
                 (0..self.n).map(|_| (0..self.n).map(|_| random.below(q) as u16).collect()).collect();
             let power = self.field.characteristic().pow(random.below(self.field.degree() as usize) as u32);
-            if crate::algebra::rank(self.field, &rows) < self.n {
+            if rank(self.field, &rows) < self.n {
                 continue;
             }
             let image = |&v: &usize| {
                 let x: Vec<u16> =
                     vector(self.field, self.n, v).iter().map(|&c| self.field.pow(c, power)).collect();
-                let y: Vec<u16> = rows.iter().map(|r| crate::algebra::dot(self.field, r, &x)).collect();
+                let y: Vec<u16> = rows.iter().map(|r| dot(self.field, r, &x)).collect();
                 self.point[number(self.field, &y)]
             };
             let map: Vec<usize> = self.vectors.iter().map(image).collect();
             let order = order(&map);
-            let fitting: Vec<u64> = crate::algebra::divisors(order)
+            let fitting: Vec<u64> = divisors(order)
                 .into_iter()
                 .filter(|d| (u64::from(orders.0)..=u64::from(orders.1)).contains(d))
                 .collect();
@@ -308,14 +298,14 @@ fn orbits(space: &Space<'_>, subspaces: &[Vec<Points>], map: &[usize], strength:
     subspaces
         .iter()
         .map(|same| {
-            let mut seen: HashMap<Points, ()> = HashMap::with_capacity(same.len());
+            let mut seen = HashSet::with_capacity(same.len());
             let mut kept = Vec::new();
             for &start in same {
-                if seen.contains_key(&start) {
+                if seen.contains(&start) {
                     continue;
                 }
                 let (mut members, mut at, mut all) = (Vec::new(), start, Points::default());
-                while seen.insert(at, ()).is_none() {
+                while seen.insert(at) {
                     members.push(at);
                     all.unite(&at);
                     let mut next = Points::default();
@@ -371,9 +361,9 @@ fn fill(space: &Space<'_>, orbits: &[Vec<Orbit>], wanted: &Wanted, random: &mut 
         let vectors = (wanted.q as usize).pow(wanted.n) - 1;
         let room = vectors / ((wanted.q as usize).pow(e as u32 + 1) - 1);
         // Half of the time as many as fit.
-        let limit = match random.below(2) {
-            _ if e == 0 => usize::MAX,
-            0 => usize::MAX,
+        let limit = match (e, wanted.limits.get(e), random.below(2)) {
+            (0, _, _) | (_, None, 0) => usize::MAX,
+            (_, Some(&limit), _) => limit as usize,
             _ => random.below(room.min(20) + 1),
         };
         while chosen[e].len() < limit {
@@ -413,5 +403,49 @@ fn fill(space: &Space<'_>, orbits: &[Vec<Orbit>], wanted: &Wanted, random: &mut 
     Packing {
         counts: chosen.iter().map(|c| c.len() as u32).collect(),
         bases: chosen.iter().rev().flatten().map(|s| space.basis(s)).collect(),
+    }
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+    use crate::algebra::first_dependent;
+
+    fn wanted(q: u32, n: u32, strength: usize, largest: u32) -> Wanted {
+        Wanted { q, n, strength, largest, limits: vec![], orders: (1, 8), groups: 12, tries: 12, seed: 1 }
+    }
+
+    #[test]
+    fn what_is_found_is_independent() {
+        for (q, n, strength, largest) in
+            [(2, 4, 2, 3), (2, 5, 3, 3), (2, 6, 2, 3), (3, 3, 2, 2), (3, 4, 3, 2), (4, 3, 3, 1), (2, 6, 4, 1)]
+        {
+            let request = wanted(q, n, strength, largest);
+            let found = packings(&request).unwrap().unwrap();
+            assert_eq!(Some(&found), packings(&request).unwrap().as_ref(), "the same again");
+            let field = Field::new(q).unwrap();
+            for p in found {
+                let bases: Vec<Vec<Vec<u16>>> = p
+                    .bases
+                    .iter()
+                    .map(|b| b.iter().map(|&v| vector(&field, n as usize, usize::from(v))).collect())
+                    .collect();
+                assert_eq!(first_dependent(&field, &bases, strength), None);
+                for (e, &count) in p.counts.iter().enumerate() {
+                    assert_eq!(bases.iter().filter(|b| b.len() == e + 1).count(), count as usize);
+                }
+            }
+        }
+    }
+
+    #[test]
+    fn limits_are_kept_and_nonsense_is_refused() {
+        let request = Wanted { limits: vec![0, 7, 2], ..wanted(2, 6, 2, 3) };
+        assert!(packings(&request).unwrap().unwrap().iter().all(|p| p.counts[1] <= 7 && p.counts[2] <= 2));
+        assert_eq!(packings(&wanted(2, 9, 2, 1)), Ok(None));
+        assert_eq!(packings(&wanted(2, 4, 1, 1)), Ok(None));
+        assert_eq!(packings(&wanted(2, 4, 4, 2)), Ok(None));
+        assert_eq!(packings(&wanted(2, 4, 2, 5)), Ok(None));
+        assert!(packings(&wanted(6, 2, 2, 1)).is_err());
     }
 }
