@@ -6,7 +6,7 @@ use num_integer::Integer;
 use thiserror::Error;
 
 use super::{Seed, SeedKind};
-use crate::algebra::{AbelianGroup, factorise, prime_power};
+use crate::algebra::{AbelianGroup, factorise, is_prime, prime_power};
 use crate::construct::field::Flat;
 
 /// Why a text is not a [`Seed`], with the line.
@@ -210,9 +210,7 @@ impl<'a> Reader<'a> {
                     return self.fail(SeedReason::Levels);
                 }
                 let (flats, directions) = (self.positive("flats")?, self.positive("directions")?);
-                if !prime_power(u32::from(prime)).is_some_and(|(_, e)| e == 1)
-                    || space(prime, directions).is_none()
-                {
+                if !is_prime(u32::from(prime)) || space(prime, directions).is_none() {
                     return self.fail(SeedReason::Space);
                 }
                 Parameters::Flats { prime, levels, flats, directions, strength: self.positive("strength")? }

@@ -264,7 +264,7 @@ fn every_rule_of_the_format_refuses() {
         (quasi, 11, "- 0 0 7 1 19", number("19")),
         (subspaces, 3, "order: 6", Space),
         (subspaces, 4, "dimension: 16", Space),
-        (subspaces, 4, "dimension: 2", number("4")),
+        (subspaces, 4, "dimension: 2", Entries { expected: 2, found: 3 }),
         (subspaces, 5, "strength: 0", number("0")),
         (subspaces, 6, "subspaces: 12", End),
         (subspaces, 10, "1 2 64", number("64")),

@@ -4,9 +4,11 @@ use super::super::testing::has_strength;
 use super::*;
 use crate::algebra::Field;
 
-/// (q, n, zeros, extended, dimension of the cyclic code, its minimum distance): MacWilliams &
-/// Sloane 1977, chapters 7, 9 and 16 and appendix A, from memory.
-const PUBLISHED: &[(u32, u32, &[u32], bool, usize, usize)] = &[
+/// q, n, zeros, extended, dimension of the cyclic code, its minimum distance.
+type Published = (u32, u32, &'static [u32], bool, usize, usize);
+
+/// MacWilliams & Sloane 1977, chapters 7, 9 and 16 and appendix A, from memory.
+const PUBLISHED: &[Published] = &[
     (2, 7, &[1], false, 4, 3),
     (2, 15, &[1, 3], false, 7, 5),
     (2, 15, &[1, 3, 5], false, 5, 7),
