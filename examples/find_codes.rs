@@ -8,11 +8,14 @@ use std::collections::BTreeMap;
 use trysquare::construct::code::dual_of_cyclic;
 use trysquare::construct::field::greedy_points;
 
+/// (factors, length, zeros, extended).
+type Found = (u32, u32, Vec<u32>, bool);
+
 fn main() -> Result<(), Box<dyn std::error::Error>> {
     let a = std::env::args().skip(1).map(|a| a.parse::<u32>()).collect::<Result<Vec<_>, _>>()?;
     let [q, longest, largest] = a[..] else { return Err("find_codes q longest largest".into()) };
-    // (dimension, strength): (factors, length, zeros, extended).
-    let mut best: BTreeMap<(u32, u32), (u32, u32, Vec<u32>, bool)> = BTreeMap::new();
+    // By (dimension, strength).
+    let mut best: BTreeMap<(u32, u32), Found> = BTreeMap::new();
     for n in (2..=longest).filter(|&n| num_integer::gcd(n, q) == 1) {
         for zeros in choices(&cosets(q, n), largest as usize) {
             for extended in [false, true] {
