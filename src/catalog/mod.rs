@@ -6,6 +6,7 @@
 //! | `books` | which Hadamard matrices and difference schemes can be had |
 //! | `latin_book` | how many mutually orthogonal Latin squares can be had |
 //! | `strength_two`, `strength_three`, `strength_any` | the families and compositions offered at N runs |
+//! | `stored` | stored arrays and codes |
 //! | `compositions` | products and juxtaposition, which keep any strength |
 //! | `fit` | the exact packing of a mix into a parent |
 //! | `candidates` | the maximal ones among the mixes offered |
@@ -21,6 +22,7 @@ mod fit;
 mod latin_book;
 pub mod seed;
 mod shelf;
+mod stored;
 mod strength_any;
 mod strength_three;
 mod strength_two;

@@ -9,6 +9,7 @@ use super::books::{HadamardBook, SchemeBook};
 use super::candidates::Candidates;
 use super::fit::{Host, Packer, Placement};
 use super::latin_book::LatinBook;
+use super::stored::StoredArrays;
 use super::{strength_any, strength_three, strength_two};
 use crate::recipe::Recipe;
 
@@ -71,6 +72,7 @@ pub struct Shelf {
     pub schemes: SchemeBook,
     /// The mutually orthogonal Latin squares.
     pub latin: LatinBook,
+    stored: StoredArrays,
     parents: Memo<Arc<Parent>>,
     variants: Memo<Variant>,
 }
@@ -90,6 +92,7 @@ impl Shelf {
             schemes: SchemeBook::new(Arc::clone(&hadamard)),
             hadamard,
             latin: LatinBook::new(),
+            stored: StoredArrays::new(),
             parents: Mutex::default(),
             variants: Mutex::default(),
         }
@@ -115,6 +118,7 @@ impl Shelf {
             3 => strength_three::collect(self, runs, &mut candidates),
             _ => strength_any::collect(self, runs, strength, &mut candidates),
         }
+        self.stored.offer(runs, strength, &mut candidates);
         let found = Arc::new(if runs <= CLOSED {
             candidates.maximal(&Packer::new(self, strength))
         } else {

@@ -6,11 +6,12 @@ use super::bag::Bag;
 use super::candidates::Candidates;
 use super::compositions::level_products;
 use super::shelf::Shelf;
+use super::stored::codes;
 use crate::algebra::{divisors, prime_power};
 use crate::recipe::Recipe;
 
 /// Offers everything known at `runs` runs and strength t ≥ 4: full factorials, Bush, foldover,
-/// products.
+/// codes, products.
 pub(super) fn collect<'a>(shelf: &'a Shelf, runs: u64, t: u32, candidates: &mut Candidates<'a>) {
     full_factorials(runs, candidates);
     if let Some((p, m)) = u32::try_from(runs).ok().and_then(prime_power)
@@ -34,6 +35,7 @@ pub(super) fn collect<'a>(shelf: &'a Shelf, runs: u64, t: u32, candidates: &mut 
             }
         }
     }
+    codes(runs, t, candidates);
     level_products(shelf, runs, t, candidates);
 }
 

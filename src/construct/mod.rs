@@ -4,6 +4,7 @@
 //! difference scheme) whose strength the cited theorem guarantees. Nothing is judged here: whoever
 //! hands an array out passes it through `verify` first.
 
+pub mod code;
 pub mod compose;
 pub mod field;
 pub mod hadamard;

@@ -84,7 +84,10 @@ impl FourCirculants {
         }
         let m = self.length;
         if let Some(g) = self.generators.iter().find(|g| g.gcd(&m) != 1) {
-            return Err(ConstructError::condition(NAME, format!("multipliers are units modulo {m}, not {g}")));
+            return Err(ConstructError::condition(
+                NAME,
+                format!("multipliers are units modulo {m}, not {g}"),
+            ));
         }
         let mut group = vec![1u16];
         let mut at = 0;
@@ -158,7 +161,8 @@ impl Frame {
                 bits
             })
             .collect();
-        let shifts = partition(1, &[0, 1]).iter().map(|o| (o[0], o.len() as i64, random.bits() | 1)).collect();
+        let shifts =
+            partition(1, &[0, 1]).iter().map(|o| (o[0], o.len() as i64, random.bits() | 1)).collect();
         let units: Vec<usize> = (1..length).filter(|u| u.gcd(&length) == 1).collect();
         // One unit per coset of ±H: the others give the same autocorrelations.
         let units = units.iter().copied().filter(|&u| orbit(u, &[0, 1])[0] == u).collect();
@@ -326,7 +330,9 @@ impl Pool {
             let one: HashSet<i64> = self.rows.iter().map(|r| r.sum_squared).collect();
             one.iter().flat_map(|a| one.iter().map(move |b| a + b)).collect()
         };
-        let fits = |i: usize, j: usize| sums.contains(&(total - self.rows[i].sum_squared - self.rows[j].sum_squared));
+        let fits = |i: usize, j: usize| {
+            sums.contains(&(total - self.rows[i].sum_squared - self.rows[j].sum_squared))
+        };
         let mut table: Vec<(u64, u32, u32)> = Vec::new();
         for i in 0..self.base {
             for j in 0..self.rows.len() {
@@ -356,7 +362,8 @@ impl Pool {
     }
 
     fn cancel(&self, four: [usize; 4]) -> bool {
-        (0..self.width).all(|c| four.iter().map(|&i| i32::from(self.plain[i * self.width + c])).sum::<i32>() == 0)
+        (0..self.width)
+            .all(|c| four.iter().map(|&i| i32::from(self.plain[i * self.width + c])).sum::<i32>() == 0)
     }
 }
 

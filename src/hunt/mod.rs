@@ -4,8 +4,10 @@
 //! | --- | --- |
 //! | `blocks` | two-level columns beside one p-level column in 4p runs |
 //! | `circulants` | four rows for the array of Goethals and Seidel |
+//! | `flats` | slices, unions of flats, that are an array of strength 3 together |
 //! | `latin` | quasi-difference matrices and V vectors |
 //! | `schemes` | difference schemes with a prescribed symmetry |
+//! | `slices` | slices of 16 runs from Hadamard matrices, an array of strength 3 together |
 //! | `subspaces` | subspaces of which any t are independent |
 //! | `symmetric` | arrays of strength 2 with a prescribed group |
 //! | `t_matrices` | T-matrices, to be multiplied with Williamson's |
@@ -16,9 +18,11 @@
 
 pub mod blocks;
 mod circulants;
+pub mod flats;
 pub mod latin;
 mod random;
 mod schemes;
+pub mod slices;
 pub mod subspaces;
 pub mod symmetric;
 mod t_matrices;

@@ -30,6 +30,12 @@ impl Random {
         ((u128::from(self.bits()) * n as u128) >> 64) as usize
     }
 
+    /// The next bits modulo `n` (0 for n = 0); the bias is below n/2^64. The searches whose stored
+    /// finds rest on this sequence use it, new ones use [`Random::below`].
+    pub fn modulo(&mut self, n: usize) -> usize {
+        self.bits().checked_rem(n as u64).unwrap_or(0) as usize
+    }
+
     /// Puts the items in random order.
     pub fn shuffle<T>(&mut self, items: &mut [T]) {
         for i in (1..items.len()).rev() {

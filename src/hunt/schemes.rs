@@ -22,7 +22,8 @@ impl Symmetry {
     /// of its length; `values` is kept as it is. Blocks for which `times` is no unit stay in place.
     #[must_use]
     pub fn of_blocks(blocks: &[usize], times: usize, plus: usize, turn: usize, values: &[u16]) -> Self {
-        let starts: Vec<usize> = blocks.iter().scan(0, |at, &n| Some(std::mem::replace(at, *at + n))).collect();
+        let starts: Vec<usize> =
+            blocks.iter().scan(0, |at, &n| Some(std::mem::replace(at, *at + n))).collect();
         let mut rows = Vec::new();
         for (b, &n) in blocks.iter().enumerate() {
             let alike: Vec<usize> = (0..blocks.len()).filter(|&k| blocks[k] == n).collect();
@@ -142,8 +143,7 @@ impl SchemeHunt {
                 "s divides r, the symmetries permute the r rows and are automorphisms of the group",
             ));
         }
-        let minus: Vec<u16> =
-            (0..s * s).map(|at| group.sub((at / s) as u16, (at % s) as u16)).collect();
+        let minus: Vec<u16> = (0..s * s).map(|at| group.sub((at / s) as u16, (at % s) as u16)).collect();
         let identity = Symmetry { rows: (0..r).collect(), values: (0..s as u16).collect() };
         let mut images = vec![identity.clone()];
         loop {
@@ -162,7 +162,8 @@ impl SchemeHunt {
             })
             .collect();
         let mut random = Random::new(self.seed);
-        let mut search = Search { hunt: self, r, s, minus, images, powers, best: Vec::new(), orbits: Vec::new() };
+        let mut search =
+            Search { hunt: self, r, s, minus, images, powers, best: Vec::new(), orbits: Vec::new() };
         search.run(&mut random);
         Ok(search.best)
     }
@@ -195,7 +196,8 @@ impl Search<'_> {
             match self.column(&columns, if invariant { &still } else { &free }, !invariant, random) {
                 Some(column) => {
                     let count = if invariant { 1 } else { self.images.len() };
-                    let orbit: Vec<Vec<u16>> = self.images[..count].iter().map(|x| x.apply(&column)).collect();
+                    let orbit: Vec<Vec<u16>> =
+                        self.images[..count].iter().map(|x| x.apply(&column)).collect();
                     self.orbits.push(orbit);
                     let total: usize = self.orbits.iter().map(Vec::len).sum();
                     if total > self.best.len() {

@@ -26,7 +26,8 @@ pub fn t_matrices(
     seed: u64,
     tries: u64,
 ) -> Result<Option<[Vec<i8>; 4]>, ConstructError> {
-    let request = FourCirculants { length, generators: generators.to_vec(), seed, samples: 0, pool: 0, pairs: 0 };
+    let request =
+        FourCirculants { length, generators: generators.to_vec(), seed, samples: 0, pool: 0, pairs: 0 };
     let group = request.multipliers()?;
     let t = usize::from(length);
     // The orbit of each place, named by its smallest place.
@@ -46,7 +47,8 @@ pub fn t_matrices(
             _ => 0,
         };
         if shifts.iter().all(|&k| (0..t).map(|i| product(symbol[i], symbol[(i + k) % t])).sum::<i32>() == 0) {
-            let row = |r: u8| symbol.iter().map(|&s| if s >> 1 == r { 1 - 2 * (s & 1) as i8 } else { 0 }).collect();
+            let row =
+                |r: u8| symbol.iter().map(|&s| if s >> 1 == r { 1 - 2 * (s & 1) as i8 } else { 0 }).collect();
             return Ok(Some([0, 1, 2, 3].map(row)));
         }
     }

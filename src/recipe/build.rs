@@ -5,7 +5,7 @@ use crate::array::Array;
 use crate::construct::compose::{self, DifferenceBlock};
 use crate::construct::hadamard::Hadamard;
 use crate::construct::scheme::{self, Scheme};
-use crate::construct::{OrbitColumn, field, latin, orbit_array, strength3};
+use crate::construct::{OrbitColumn, code, field, latin, orbit_array, strength3};
 
 /// A recipe nested deeper than this is refused.
 pub(super) const MAX_DEPTH: usize = 64;
@@ -32,6 +32,12 @@ impl Recipe {
             Self::FullFactorial { levels } => field::full_factorial(levels)?,
             Self::RaoHamming { q, n } => field::rao_hamming(*q, *n)?,
             Self::Subspaces { q, n, subspaces, strength } => field::subspaces(*q, *n, subspaces, *strength)?,
+            Self::Flats { p, levels, flats, .. } => field::flats(*p, levels, flats)?,
+            Self::DualOfCyclic { q, length, zeros, extended, strength } => {
+                code::dual_of_cyclic(*q, *length, zeros, *extended)?.array_of_strength(*strength)?
+            }
+            Self::ReedMuller { r, m } => code::reed_muller(*r, *m)?.array()?,
+            Self::Kerdock { m } => code::kerdock(*m)?,
             Self::LargeAndSmall { p, e, d } => field::large_and_small(*p, *e, *d)?,
             Self::Bush { q, t } => field::bush(*q, *t)?,
             Self::Ovoid { q } => field::ovoid(*q)?,

@@ -17,6 +17,7 @@ use thiserror::Error;
 use crate::algebra::AlgebraError;
 use crate::array::ArrayError;
 use crate::construct::ConstructError;
+use crate::construct::field::Flat;
 
 pub use hadamard::HadamardRecipe;
 pub use scheme::{SchemeRecipe, Shape};
@@ -60,6 +61,44 @@ pub enum Recipe {
         subspaces: Vec<Vec<Vec<u16>>>,
         /// How many subspaces are independent whichever are taken.
         strength: u32,
+    },
+    /// Flats over GF(p), of as many directions each, one after the other.
+    Flats {
+        /// The characteristic.
+        p: u32,
+        /// The levels of the factors.
+        levels: Vec<u16>,
+        /// The flats.
+        flats: Vec<Flat>,
+        /// The strength that holds together, found by search.
+        strength: u32,
+    },
+    /// The words of the dual of a cyclic code (BCH, quadratic residue, Golay): `length` q-level
+    /// factors, one more when extended.
+    DualOfCyclic {
+        /// The order of the field.
+        q: u32,
+        /// The length of the cyclic code.
+        length: u32,
+        /// The exponents of its zeros, one of each cyclotomic coset or more.
+        zeros: Vec<u32>,
+        /// Whether a parity check is added to it.
+        extended: bool,
+        /// The strength, below the minimum distance; computed again when the array is built.
+        strength: u32,
+    },
+    /// The Reed–Muller code of order r and length 2^m: strength 2^(r+1) − 1.
+    ReedMuller {
+        /// r.
+        r: u32,
+        /// m.
+        m: u32,
+    },
+    /// The Kerdock code of length 2^m, for m = 4 that of Nordstrom and Robinson: 2^m two-level
+    /// factors in 4^m runs, strength 5.
+    Kerdock {
+        /// m, even.
+        m: u32,
     },
     /// One p^e-level and p^e p^d-level factors in p^(e+d) runs, e ≥ d, strength 2.
     LargeAndSmall {

@@ -40,6 +40,11 @@ impl Recipe {
             Self::Subspaces { q, subspaces, .. } => {
                 subspaces.iter().map(|s| power(*q, s.len() as u32)).collect::<Result<_, _>>()?
             }
+            Self::Flats { levels, .. } => levels.clone(),
+            Self::DualOfCyclic { q, length, extended, .. } => {
+                vec![level(*q)?; usize::from(level(*length)?) + usize::from(*extended)]
+            }
+            Self::ReedMuller { m, .. } | Self::Kerdock { m } => vec![2; usize::from(power(2, *m)?)],
             Self::LargeAndSmall { p, e, d } => {
                 let mut levels = vec![power(*p, *e)?];
                 levels.extend(std::iter::repeat_n(power(*p, *d)?, usize::from(levels[0])));
@@ -168,6 +173,19 @@ impl Recipe {
             Self::RaoHamming { q, n } | Self::Subspaces { q, n, .. } | Self::CodeCosets { q, n, .. } => {
                 raise(*q, *n)
             }
+            Self::Flats { p, flats, .. } => {
+                let directions = flats.first().map_or(0, |f| f.directions.len() as u32);
+                times(flats.len(), raise(*p, directions)?)
+            }
+            Self::DualOfCyclic { q, length, zeros, extended, .. } => {
+                let cosets = coset_elements(*q, *length, zeros).ok_or_else(too_many)?;
+                raise(*q, cosets + u32::from(*extended))
+            }
+            Self::ReedMuller { r, m } => {
+                let dimension = (0..=*r.min(m)).map(|i| num_integer::binomial((*m).min(16), i)).sum();
+                raise(2, dimension)
+            }
+            Self::Kerdock { m } => raise(4, *m),
             Self::LargeAndSmall { p, e, d } => raise(*p, e.checked_add(*d).ok_or_else(too_many)?),
             Self::Bush { q, t } => raise(*q, *t),
             Self::Ovoid { q } => raise(*q, 4),
@@ -240,7 +258,13 @@ impl Recipe {
             | Self::TwoGrids { .. } => 3,
             Self::Subspaces { strength, .. }
             | Self::Orbits { strength, .. }
+            | Self::Flats { strength, .. }
+            | Self::DualOfCyclic { strength, .. }
             | Self::Slices { strength, .. } => *strength,
+            Self::ReedMuller { r, .. } => {
+                r.checked_add(1).and_then(|r| 2u32.checked_pow(r)).map_or(u32::MAX, |d| d - 1)
+            }
+            Self::Kerdock { .. } => 5,
             Self::Juxtapose { parts } => parts.iter().map(|p| p.of.strength()).min().unwrap_or(0),
             Self::LevelProduct { left, right, .. } => guaranteed(left).min(guaranteed(right)),
             Self::Arrange { of, split, .. } => {
@@ -260,6 +284,23 @@ fn guaranteed(recipe: &Recipe) -> u32 {
         Ok(levels) if levels.len() <= t as usize => u32::MAX,
         _ => t,
     }
+}
+
+/// The number of elements of the q-cyclotomic cosets of the zeros modulo n; `None` when a zero is
+/// out of range or q is not prime to n.
+fn coset_elements(q: u32, n: u32, zeros: &[u32]) -> Option<u32> {
+    if n == 0 || n > u32::from(u16::MAX) || num_integer::gcd(q, n) != 1 {
+        return None;
+    }
+    let mut seen = vec![false; n as usize];
+    for &z in zeros {
+        let mut at = z;
+        while !std::mem::replace(seen.get_mut(at as usize)?, true) {
+            // Below 2^32 because at and the remainder of q are below n.
+            at = at * (q % n) % n;
+        }
+    }
+    u32::try_from(seen.into_iter().filter(|&s| s).count()).ok()
 }
 
 fn power(q: u32, e: u32) -> Result<u16, RecipeError> {

@@ -18,6 +18,18 @@ impl fmt::Display for Recipe {
             Self::Subspaces { q, n, subspaces, .. } => {
                 write!(f, "{} subspaces of GF({q})^{n}", subspaces.len())
             }
+            Self::Flats { p, flats, .. } => write!(f, "{} flats over GF({p})", flats.len()),
+            Self::DualOfCyclic { q, length, zeros, extended, .. } => {
+                let kind = if *extended { "extended cyclic" } else { "cyclic" };
+                let zeros: Vec<String> = zeros.iter().map(u32::to_string).collect();
+                write!(
+                    f,
+                    "dual of the {kind} code of length {length} over GF({q}) with zeros {}",
+                    zeros.join(", ")
+                )
+            }
+            Self::ReedMuller { r, m } => write!(f, "Reed–Muller code of order {r} and length 2^{m}"),
+            Self::Kerdock { m } => write!(f, "Kerdock code of length 2^{m}"),
             Self::LargeAndSmall { p, e, d } => {
                 write!(f, "subspaces of dimensions {e} and {d} in GF({p})^{}", e + d)
             }

@@ -1,17 +1,20 @@
 //! Seeds: the starters in the folder `catalog/`, embedded in the crate.
 //!
 //! The format is described in `catalog/FORMAT.md`. Nothing is read before it is asked for:
-//! [`schemes`] and [`hadamard_orders`] read the keys of the files, [`find`] one whole file.
+//! [`schemes`], [`hadamard_orders`] and [`arrays`] read the keys of the files, [`find`] one whole file.
 
 mod files;
 mod parse;
 
 use std::iter;
 
+use crate::algebra::{Field, vector};
 use crate::construct::ConstructError;
+use crate::construct::field::Flat;
 use crate::construct::hadamard::{Hadamard, goethals_seidel, turyn_type};
 use crate::construct::latin::{QuasiDifference, v_vector};
 use crate::construct::scheme::{Scheme, from_starter};
+use crate::recipe::Recipe;
 
 pub use parse::{SeedError, SeedReason};
 
@@ -76,6 +79,29 @@ pub enum SeedKind {
         /// The base columns; `None` is an empty place.
         columns: Vec<Vec<Option<u16>>>,
     },
+    /// Subspaces of GF(q)^n, any `strength` of them independent.
+    Subspaces {
+        /// q.
+        order: u16,
+        /// n.
+        dimension: u16,
+        /// How many are independent whichever are taken.
+        strength: u16,
+        /// A basis of each, every vector by its number in base q, first coordinate least
+        /// significant.
+        bases: Vec<Vec<u16>>,
+    },
+    /// Flats over GF(p) whose union is an array.
+    Flats {
+        /// p.
+        prime: u16,
+        /// The levels of the factors.
+        levels: Vec<u16>,
+        /// The strength of the array.
+        strength: u16,
+        /// The flats.
+        flats: Vec<Flat>,
+    },
 }
 
 impl Seed {
@@ -131,6 +157,43 @@ pub struct QuasiDifferenceEntry {
     pub rows: usize,
     /// u, the number of empty places in each row.
     pub empty: usize,
+}
+
+impl SeedKind {
+    /// The recipe of the array this seed stands for, `None` when it is of another kind.
+    #[must_use]
+    pub fn recipe(&self) -> Option<Recipe> {
+        match self {
+            Self::Subspaces { order, dimension, strength, bases } => {
+                let field = Field::new(u32::from(*order)).ok()?;
+                let expand = |&v: &u16| vector(&field, usize::from(*dimension), usize::from(v));
+                Some(Recipe::Subspaces {
+                    q: u32::from(*order),
+                    n: u32::from(*dimension),
+                    subspaces: bases.iter().map(|b| b.iter().map(expand).collect()).collect(),
+                    strength: u32::from(*strength),
+                })
+            }
+            Self::Flats { prime, levels, strength, flats } => Some(Recipe::Flats {
+                p: u32::from(*prime),
+                levels: levels.clone(),
+                flats: flats.clone(),
+                strength: u32::from(*strength),
+            }),
+            _ => None,
+        }
+    }
+}
+
+/// The size of an array on the shelf.
+#[derive(Clone, Copy, Debug, PartialEq, Eq)]
+pub struct ArrayEntry {
+    /// The name of the seed, for [`find`].
+    pub name: &'static str,
+    /// The number of runs.
+    pub runs: u64,
+    /// The strength.
+    pub strength: u32,
 }
 
 /// The parameters of a difference scheme on the shelf.
@@ -215,6 +278,22 @@ pub fn quasi_differences() -> impl Iterator<Item = QuasiDifferenceEntry> {
             empty: usize::from(empty),
         }),
         _ => None,
+    })
+}
+
+/// The arrays on the shelf, in the order of their names; only keys are read.
+pub fn arrays() -> impl Iterator<Item = ArrayEntry> {
+    parameters().filter_map(|(name, parameters)| {
+        let (runs, strength) = match parameters {
+            Parameters::Subspaces { order, dimension, strength, .. } => {
+                (u64::from(order).pow(u32::from(dimension)), strength)
+            }
+            Parameters::Flats { prime, flats, directions, strength, .. } => {
+                (u64::from(prime).pow(u32::from(directions)) * u64::from(flats), strength)
+            }
+            _ => return None,
+        };
+        Some(ArrayEntry { name, runs, strength: u32::from(strength) })
     })
 }
 

@@ -6,7 +6,8 @@ use num_integer::Integer;
 use thiserror::Error;
 
 use super::{Seed, SeedKind};
-use crate::algebra::{AbelianGroup, factorise, prime_power};
+use crate::algebra::{AbelianGroup, factorise, is_prime, prime_power};
+use crate::construct::field::Flat;
 
 /// Why a text is not a [`Seed`], with the line.
 #[derive(Clone, Debug, PartialEq, Eq, Error)]
@@ -36,7 +37,8 @@ pub enum SeedReason {
     Name,
     /// An unknown kind.
     #[error(
-        "the kind is difference-scheme, four-circulants, turyn-type, v-vector or quasi-difference, not {0:?}"
+        "the kind is difference-scheme, four-circulants, turyn-type, v-vector, quasi-difference, subspaces \
+         or flats, not {0:?}"
     )]
     Kind(String),
     /// Not a number in the range that the place admits.
@@ -57,6 +59,12 @@ pub enum SeedReason {
     /// Not a permutation of the rows.
     #[error("the permutation names each of {0} rows once")]
     Permutation(u16),
+    /// The order and the dimension make no space of at most 65,521 vectors.
+    #[error("the order is a prime power, and order^dimension at most 65521")]
+    Space,
+    /// Levels that are no numbers of levels.
+    #[error("a factor has at least 2 levels")]
+    Levels,
     /// Not a digest.
     #[error("the digest has 64 lower-case hexadecimal digits")]
     Digest,
@@ -82,6 +90,12 @@ pub enum SeedReason {
     Trailing,
 }
 
+/// The number of vectors of a space over a field that exists, when it fits.
+fn space(order: u16, dimension: u16) -> Option<u16> {
+    prime_power(u32::from(order))?;
+    order.checked_pow(u32::from(dimension))
+}
+
 /// The parameters of each kind.
 pub(super) enum Parameters {
     DifferenceScheme { rows: u16, columns: u16, group: Vec<u16> },
@@ -89,6 +103,8 @@ pub(super) enum Parameters {
     TurynType { length: u16 },
     VVector { m: u16, t: u16 },
     QuasiDifference { group: Vec<u16>, rows: u16, empty: u16, columns: u16, permutation: Vec<u16> },
+    Subspaces { order: u16, dimension: u16, strength: u16, subspaces: u16 },
+    Flats { prime: u16, levels: Vec<u16>, flats: u16, directions: u16, strength: u16 },
 }
 
 pub(super) struct Reader<'a> {
@@ -178,6 +194,27 @@ impl<'a> Reader<'a> {
                     _ => return self.fail(SeedReason::Field),
                 }
             }
+            "subspaces" => {
+                let (order, dimension) = (self.positive("order")?, self.positive("dimension")?);
+                if space(order, dimension).is_none() {
+                    return self.fail(SeedReason::Space);
+                }
+                let (strength, subspaces) = (self.positive("strength")?, self.positive("subspaces")?);
+                Parameters::Subspaces { order, dimension, strength, subspaces }
+            }
+            "flats" => {
+                let prime = self.positive("prime")?;
+                let levels = self.value("levels")?;
+                let levels = self.numbers(levels)?;
+                if levels.iter().any(|&s| s < 2) {
+                    return self.fail(SeedReason::Levels);
+                }
+                let (flats, directions) = (self.positive("flats")?, self.positive("directions")?);
+                if !is_prime(u32::from(prime)) || space(prime, directions).is_none() {
+                    return self.fail(SeedReason::Space);
+                }
+                Parameters::Flats { prime, levels, flats, directions, strength: self.positive("strength")? }
+            }
             "quasi-difference" => {
                 let group = self.group()?;
                 let (rows, empty) = (self.positive("rows")?, self.positive("empty")?);
@@ -233,6 +270,24 @@ impl<'a> Reader<'a> {
                     .map(|_| self.places_line(usize::from(rows), order))
                     .collect::<Result<_, _>>()?;
                 SeedKind::QuasiDifference { group, empty, permutation, columns }
+            }
+            Parameters::Subspaces { order, dimension, strength, subspaces } => {
+                let vectors = space(order, dimension).unwrap_or(0);
+                let bases = (0..subspaces)
+                    .map(|_| self.basis_line(usize::from(dimension), vectors))
+                    .collect::<Result<_, _>>()?;
+                SeedKind::Subspaces { order, dimension, strength, bases }
+            }
+            Parameters::Flats { prime, levels, flats, directions, strength } => {
+                let flats = (0..flats)
+                    .map(|_| {
+                        let base = self.run_line(&levels)?;
+                        let directions =
+                            (0..directions).map(|_| self.run_line(&levels)).collect::<Result<_, _>>()?;
+                        Ok(Flat { base, directions })
+                    })
+                    .collect::<Result<_, _>>()?;
+                SeedKind::Flats { prime, levels, strength, flats }
             }
         })
     }
@@ -292,6 +347,28 @@ impl<'a> Reader<'a> {
         let entries = self.places_line(expected, order)?;
         let full: Option<Vec<u16>> = entries.into_iter().collect();
         full.map_or_else(|| self.fail(SeedReason::Number("-".to_owned())), Ok)
+    }
+
+    /// Up to `dimension` numbers of vectors other than 0.
+    fn basis_line(&mut self, dimension: usize, vectors: u16) -> Result<Vec<u16>, SeedError> {
+        let line = self.next_line()?;
+        let basis = self.numbers(line)?;
+        if basis.len() > dimension {
+            return self.fail(SeedReason::Entries { expected: dimension, found: basis.len() });
+        }
+        match basis.iter().find(|&&v| v == 0 || v >= vectors) {
+            Some(v) => self.fail(SeedReason::Number(v.to_string())),
+            None => Ok(basis),
+        }
+    }
+
+    /// A level of each factor.
+    fn run_line(&mut self, levels: &[u16]) -> Result<Vec<u16>, SeedError> {
+        let run = self.numbers_line(levels.len(), u16::MAX)?;
+        match run.iter().zip(levels).find(|(x, s)| x >= s) {
+            Some((x, _)) => self.fail(SeedReason::Number(x.to_string())),
+            None => Ok(run),
+        }
     }
 
     fn places_line(&mut self, expected: usize, order: u16) -> Result<Vec<Option<u16>>, SeedError> {

@@ -6,7 +6,9 @@ use sha2::{Digest, Sha256};
 
 use super::*;
 use crate::algebra::{AbelianGroup, Field, prime_powers};
+use crate::construct::compose::testing::has_strength;
 use crate::construct::hadamard::{kronecker, miyamoto, paley_one, paley_two, sylvester};
+use crate::verify::{Demand, certify};
 
 type Places = Vec<Vec<Option<u16>>>;
 
@@ -93,6 +95,14 @@ fn every_seed_is_what_it_says() {
             let h = matrix.unwrap();
             assert!(h.is_hadamard(), "{name}");
             lines(h.order(), h.order(), "", |i, j| if h.entry(i, j) > 0 { '+' } else { '-' })
+        } else if let Some(recipe) = seed.kind.recipe() {
+            let array = recipe.build().unwrap();
+            let strength = recipe.strength() as usize;
+            if array.runs() <= 256 {
+                assert!(has_strength(&array, strength), "{name}");
+            }
+            assert!(certify(&array, &Demand::strength(strength)).unwrap().certificate.strength >= strength);
+            lines(array.runs(), array.factors(), " ", |i, j| array.get(i, j))
         } else {
             let (group, empty, columns) = quasi_difference_matrix(&seed.kind).unwrap();
             check_quasi_difference(name, &group, empty, &columns);
@@ -170,9 +180,15 @@ fn lookups_agree_with_the_seeds() {
 
 #[test]
 fn a_seed_cut_at_any_byte_is_refused() {
-    for name in
-        ["scheme-06-06-03", "circulants-007", "turyn-016", "v-vector-02-03", "quasi-difference-19-06-01"]
-    {
+    for name in [
+        "scheme-06-06-03",
+        "circulants-007",
+        "turyn-016",
+        "v-vector-02-03",
+        "quasi-difference-19-06-01",
+        "subspaces-0064-2-8x6-4x7",
+        "flats-0054-3-3x5-2x1",
+    ] {
         let text = files::FILES.iter().find(|f| f.0 == name).unwrap().1;
         for cut in 0..text.len() {
             assert_eq!(
@@ -197,6 +213,7 @@ fn every_rule_of_the_format_refuses() {
     use SeedReason::*;
     let (scheme, circulants, turyn) = ("scheme-06-06-03", "circulants-007", "turyn-016");
     let (vector, quasi) = ("v-vector-02-03", "quasi-difference-19-06-01");
+    let (subspaces, flats) = ("subspaces-0064-2-8x6-4x7", "flats-0054-3-3x5-2x1");
     let number = |text: &str| Number(text.to_owned());
     let cases = [
         (scheme, 1, "title: x", Key("name")),
@@ -251,6 +268,21 @@ fn every_rule_of_the_format_refuses() {
         (quasi, 7, "permutation: 2 0 1 4 5 5", Permutation(6)),
         (quasi, 7, "permutation: 2 0 1 4 5 6", Permutation(6)),
         (quasi, 11, "- 0 0 7 1 19", number("19")),
+        (subspaces, 3, "order: 6", Space),
+        (subspaces, 4, "dimension: 16", Space),
+        (subspaces, 4, "dimension: 2", Entries { expected: 2, found: 3 }),
+        (subspaces, 5, "strength: 0", number("0")),
+        (subspaces, 6, "subspaces: 12", End),
+        (subspaces, 10, "1 2 64", number("64")),
+        (subspaces, 10, "1 0", number("0")),
+        (subspaces, 10, "1 2 4 8 16 32 1", Entries { expected: 6, found: 7 }),
+        (flats, 3, "prime: 4", Space),
+        (flats, 4, "levels: 2 3 3 3 3 1", Levels),
+        (flats, 4, "levels: 2 3 3 3 3", Entries { expected: 5, found: 6 }),
+        (flats, 6, "directions: 17", Space),
+        (flats, 7, "strength: x", number("x")),
+        (flats, 11, "2 0 0 0 0 0", number("2")),
+        (flats, 12, "0 1 0 1 2 3", number("3")),
     ];
     for (name, line, with, reason) in cases {
         assert_eq!(changed(name, line, with).reason, reason, "{name} line {line}: {with:?}");
@@ -316,6 +348,13 @@ proptest! {
         match damaged.parse::<Seed>() {
             Ok(seed) => {
                 let _ = (seed.scheme(), seed.hadamard(), seed.quasi_difference());
+                if let Some(recipe) = seed.kind.recipe() {
+                    // Sizes are limited here only so that the test stays fast.
+                    let _ = recipe.levels();
+                    if recipe.runs().is_ok_and(|n| n <= 1 << 12) {
+                        let _ = recipe.build();
+                    }
+                }
             }
             Err(e) => prop_assert!(!e.to_string().is_empty()),
         }

@@ -4,7 +4,7 @@
 //! e-dimensional subspace of linear functionals, and its level in run `v` is the tuple of values of
 //! a basis of that subspace on `v`. The array has strength t exactly when any t of the subspaces are
 //! independent (their sum is direct). All functions of this room but [`full_factorial`],
-//! [`zero_sum`] and [`addelman_kempthorne`] make linear arrays.
+//! [`zero_sum`], [`addelman_kempthorne`] and [`flats()`] make linear arrays.
 //!
 //! When to prefer which:
 //!
@@ -21,7 +21,9 @@
 //! | strength 3, q levels: q + 1 (q even: q + 2) factors in q^3 runs; q² + 1 in q^4 | [`bush`]; [`ovoid`] |
 //! | strength 3, two factors of 2^m levels beside two-level factors | [`two_subspaces`] |
 //! | strength 3, one factor of many levels beside q-level factors | [`code_cosets`] |
+//! | any strength, q levels, the first points that fit | [`greedy_points`] |
 //! | a cap, a code or a set of subspaces of one's own | [`points`], [`subspaces`] |
+//! | cosets of one's own, the slices of an array of strength 3 | [`flats()`] |
 //!
 //! **Order of the runs** of every linear array: run number i is the vector whose coordinates are
 //! the base-q digits of i, *first coordinate least significant*. **Levels** of a factor with basis
@@ -34,7 +36,9 @@ mod addelman_kempthorne;
 mod affine_points;
 mod bush;
 mod code_cosets;
+mod flats;
 mod full_factorial;
+mod greedy_points;
 mod large_and_small;
 mod ovoid;
 mod points;
@@ -48,7 +52,9 @@ pub use addelman_kempthorne::addelman_kempthorne;
 pub use affine_points::affine_points;
 pub use bush::bush;
 pub use code_cosets::code_cosets;
+pub use flats::{Flat, flats};
 pub use full_factorial::full_factorial;
+pub use greedy_points::greedy_points;
 pub use large_and_small::large_and_small;
 pub use ovoid::ovoid;
 pub use points::{points, points_strength};
