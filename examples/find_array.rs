@@ -1,6 +1,7 @@
 //! Looks for an array with a prescribed group: `find_array RUNS MIX GROUP SEED ATTEMPTS POOL`, the
-//! group written as cyclic orders (`3`, `3x3`) or `1`; prints the orbit columns.
+//! group written as cyclic orders (`3`, `3x3`) or `1`; prints the seed.
 
+use trysquare::hunt::orbits_seed;
 use trysquare::hunt::symmetric::{SymmetricHunt, hunt};
 use trysquare::mix::Mix;
 
@@ -31,9 +32,11 @@ fn main() -> Result<(), Box<dyn std::error::Error>> {
         found.attempt,
         start.elapsed().as_secs_f64()
     );
-    for c in &found.columns {
-        let list = |x: &[u16]| x.iter().map(u16::to_string).collect::<Vec<_>>().join(" ");
-        println!("{} | {} | {}", c.levels, list(&c.shifts), list(&c.base));
-    }
+    let source =
+        format!(
+        "computed for this project: examples/find_array {runs} \"{mix}\" {} {seed} {attempts} {pool}",
+        words[2]
+    );
+    print!("{}", orbits_seed(&request.group, &found.columns, 2, &source)?);
     if found.complete { Ok(()) } else { Err("not all columns were found".into()) }
 }

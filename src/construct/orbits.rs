@@ -1,5 +1,7 @@
 //! Arrays with a prescribed group of symmetries, from one symbol per orbit.
 
+use serde::{Deserialize, Serialize};
+
 use super::ConstructError;
 use crate::array::Array;
 
@@ -7,11 +9,14 @@ const NAME: &str = "orbit array";
 
 /// One column of an array on which a group acts: its symbol in run (o, g) is
 /// `base[o] + Σ g_i · shifts[i]` modulo `levels`.
-#[derive(Clone, Debug, PartialEq, Eq, Hash)]
+#[derive(Clone, Debug, PartialEq, Eq, Hash, Serialize, Deserialize)]
+#[serde(deny_unknown_fields)]
+#[cfg_attr(feature = "schema", derive(schemars::JsonSchema))]
 pub struct OrbitColumn {
     /// The number of levels.
     pub levels: u16,
     /// How far each generator of the group moves the level.
+    #[serde(default, skip_serializing_if = "Vec::is_empty")]
     pub shifts: Vec<u16>,
     /// The symbol of the first run of each orbit.
     pub base: Vec<u16>,

@@ -32,4 +32,4 @@ pub use circulants::FourCirculants;
 pub use random::Random;
 pub use schemes::{SchemeHunt, Symmetry};
 pub use t_matrices::t_matrices;
-pub use write::{circulants_seed, scheme_seed};
+pub use write::{circulants_seed, orbits_seed, scheme_seed};

@@ -4,9 +4,10 @@ use std::fmt::Write;
 
 use sha2::{Digest, Sha256};
 
-use crate::construct::ConstructError;
 use crate::construct::hadamard::goethals_seidel;
 use crate::construct::scheme::from_starter;
+use crate::construct::{ConstructError, OrbitColumn, orbit_array};
+use crate::mix::counts_of;
 
 /// The text of the seed `circulants-LENGTH` in the format of `catalog/FORMAT.md`.
 ///
@@ -44,6 +45,37 @@ pub fn scheme_seed(group: &[u16], columns: &[Vec<u16>], source: &str) -> Result<
         "name: scheme-{r:02}-{c:02}-{s:02}\nkind: difference-scheme\nrows: {r}\ncolumns: {c}\ngroup: {}\n\
          source: {source}\ndigest: {}\nbody:\n{body}end\n",
         numbers(group),
+        digest(&expanded)
+    ))
+}
+
+/// The text of the seed `orbits-RUNS-STRENGTH-MIX` in the format of `catalog/FORMAT.md`; factors
+/// with many levels come first.
+///
+/// # Errors
+/// Those of [`orbit_array`]: the columns are checked, but not the strength.
+pub fn orbits_seed(
+    group: &[u16],
+    columns: &[OrbitColumn],
+    strength: u32,
+    source: &str,
+) -> Result<String, ConstructError> {
+    let mut columns = columns.to_vec();
+    columns.sort_by_key(|c| std::cmp::Reverse(c.levels));
+    let array = orbit_array(group, &columns)?;
+    let expanded: String = array.rows().map(|run| numbers(&run) + "\n").collect();
+    let body: String =
+        columns.iter().map(|c| numbers(&[&c.shifts[..], &c.base[..]].concat()) + "\n").collect();
+    let mix: Vec<String> =
+        counts_of(array.levels()).into_iter().rev().map(|(s, k)| format!("{s}x{k}")).collect();
+    Ok(format!(
+        "name: orbits-{:04}-{strength}-{}\nkind: orbits\ngroup: {}\norbits: {}\nlevels: {}\nstrength: {strength}\n\
+         source: {source}\ndigest: {}\nbody:\n{body}end\n",
+        array.runs(),
+        mix.join("-"),
+        if group.is_empty() { "1".to_owned() } else { numbers(group) },
+        columns[0].base.len(),
+        numbers(array.levels()),
         digest(&expanded)
     ))
 }

@@ -5,7 +5,7 @@ use crate::array::Array;
 use crate::construct::compose::{self, DifferenceBlock};
 use crate::construct::hadamard::Hadamard;
 use crate::construct::scheme::{self, Scheme};
-use crate::construct::{OrbitColumn, code, field, latin, orbit_array, strength3};
+use crate::construct::{code, field, latin, orbit_array, strength3};
 
 /// A recipe nested deeper than this is refused.
 pub(super) const MAX_DEPTH: usize = 64;
@@ -45,13 +45,7 @@ impl Recipe {
             Self::TwoSubspaces { m, d } => field::two_subspaces(*m, *d)?,
             Self::CodeCosets { q, n, k } => field::code_cosets(*q, *n, *k)?,
             Self::BlockTypes { vectors } => crate::construct::block_types(vectors)?,
-            Self::Orbits { group, columns, .. } => {
-                let columns: Vec<OrbitColumn> = columns
-                    .iter()
-                    .map(|c| OrbitColumn { levels: c.levels, shifts: c.shifts.clone(), base: c.base.clone() })
-                    .collect();
-                orbit_array(group, &columns)?
-            }
+            Self::Orbits { group, columns, .. } => orbit_array(group, columns)?,
             Self::Hadamard { matrix } => matrix.build()?.to_array()?,
             Self::Developed { scheme } => scheme::developed_with_rows(&scheme.build()?)?,
             Self::QuasiDifference { group, permutation, columns, fill } => {

@@ -16,8 +16,8 @@ use thiserror::Error;
 
 use crate::algebra::AlgebraError;
 use crate::array::ArrayError;
-use crate::construct::ConstructError;
 use crate::construct::field::Flat;
+use crate::construct::{ConstructError, OrbitColumn};
 
 pub use hadamard::HadamardRecipe;
 pub use scheme::{SchemeRecipe, Shape};
@@ -159,7 +159,7 @@ pub enum Recipe {
         #[serde(default, skip_serializing_if = "Vec::is_empty")]
         group: Vec<u16>,
         /// The columns.
-        columns: Vec<Orbit>,
+        columns: Vec<OrbitColumn>,
         /// The strength for which they were chosen.
         strength: u32,
     },
@@ -331,20 +331,6 @@ pub enum Recipe {
         #[serde(default, skip_serializing_if = "Option::is_none")]
         column: Option<u32>,
     },
-}
-
-/// A column of [`Recipe::Orbits`].
-#[derive(Clone, Debug, PartialEq, Eq, Hash, Serialize, Deserialize)]
-#[serde(deny_unknown_fields)]
-#[cfg_attr(feature = "schema", derive(schemars::JsonSchema))]
-pub struct Orbit {
-    /// The number of levels.
-    pub levels: u16,
-    /// How far each generator of the group moves the level.
-    #[serde(default, skip_serializing_if = "Vec::is_empty")]
-    pub shifts: Vec<u16>,
-    /// The symbol of the first run of each orbit.
-    pub base: Vec<u16>,
 }
 
 /// One array of a [`Recipe::Juxtapose`].

@@ -9,11 +9,11 @@ mod parse;
 use std::iter;
 
 use crate::algebra::{Field, vector};
-use crate::construct::ConstructError;
 use crate::construct::field::Flat;
 use crate::construct::hadamard::{Hadamard, goethals_seidel, turyn_type};
 use crate::construct::latin::{QuasiDifference, v_vector};
 use crate::construct::scheme::{Scheme, from_starter};
+use crate::construct::{ConstructError, OrbitColumn};
 use crate::recipe::Recipe;
 
 pub use parse::{SeedError, SeedReason};
@@ -102,6 +102,15 @@ pub enum SeedKind {
         /// The flats.
         flats: Vec<Flat>,
     },
+    /// One symbol per orbit of an abelian group that acts on the runs.
+    Orbits {
+        /// The orders of the cyclic factors of the group, none for no symmetry.
+        group: Vec<u16>,
+        /// The strength.
+        strength: u16,
+        /// The columns.
+        columns: Vec<OrbitColumn>,
+    },
 }
 
 impl Seed {
@@ -178,6 +187,11 @@ impl SeedKind {
                 p: u32::from(*prime),
                 levels: levels.clone(),
                 flats: flats.clone(),
+                strength: u32::from(*strength),
+            }),
+            Self::Orbits { group, strength, columns } => Some(Recipe::Orbits {
+                group: group.clone(),
+                columns: columns.clone(),
                 strength: u32::from(*strength),
             }),
             _ => None,
@@ -290,6 +304,9 @@ pub fn arrays() -> impl Iterator<Item = ArrayEntry> {
             }
             Parameters::Flats { prime, flats, directions, strength, .. } => {
                 (u64::from(prime).pow(u32::from(directions)) * u64::from(flats), strength)
+            }
+            Parameters::Orbits { group, orbits, strength, .. } => {
+                (group.iter().fold(u64::from(orbits), |n, &g| n * u64::from(g)), strength)
             }
             _ => return None,
         };

@@ -7,6 +7,7 @@ use thiserror::Error;
 
 use super::{Seed, SeedKind};
 use crate::algebra::{AbelianGroup, factorise, is_prime, prime_power};
+use crate::construct::OrbitColumn;
 use crate::construct::field::Flat;
 
 /// Why a text is not a [`Seed`], with the line.
@@ -37,8 +38,8 @@ pub enum SeedReason {
     Name,
     /// An unknown kind.
     #[error(
-        "the kind is difference-scheme, four-circulants, turyn-type, v-vector, quasi-difference, subspaces \
-         or flats, not {0:?}"
+        "the kind is difference-scheme, four-circulants, turyn-type, v-vector, quasi-difference, subspaces, \
+         flats or orbits, not {0:?}"
     )]
     Kind(String),
     /// Not a number in the range that the place admits.
@@ -105,6 +106,7 @@ pub(super) enum Parameters {
     QuasiDifference { group: Vec<u16>, rows: u16, empty: u16, columns: u16, permutation: Vec<u16> },
     Subspaces { order: u16, dimension: u16, strength: u16, subspaces: u16 },
     Flats { prime: u16, levels: Vec<u16>, flats: u16, directions: u16, strength: u16 },
+    Orbits { group: Vec<u16>, orbits: u16, levels: Vec<u16>, strength: u16 },
 }
 
 pub(super) struct Reader<'a> {
@@ -204,16 +206,20 @@ impl<'a> Reader<'a> {
             }
             "flats" => {
                 let prime = self.positive("prime")?;
-                let levels = self.value("levels")?;
-                let levels = self.numbers(levels)?;
-                if levels.iter().any(|&s| s < 2) {
-                    return self.fail(SeedReason::Levels);
-                }
+                let levels = self.levels()?;
                 let (flats, directions) = (self.positive("flats")?, self.positive("directions")?);
                 if !is_prime(u32::from(prime)) || space(prime, directions).is_none() {
                     return self.fail(SeedReason::Space);
                 }
                 Parameters::Flats { prime, levels, flats, directions, strength: self.positive("strength")? }
+            }
+            "orbits" => {
+                let group = match self.value("group")? {
+                    "1" => Vec::new(),
+                    text => self.group_of(text)?,
+                };
+                let (orbits, levels) = (self.positive("orbits")?, self.levels()?);
+                Parameters::Orbits { group, orbits, levels, strength: self.positive("strength")? }
             }
             "quasi-difference" => {
                 let group = self.group()?;
@@ -289,6 +295,17 @@ impl<'a> Reader<'a> {
                     .collect::<Result<_, _>>()?;
                 SeedKind::Flats { prime, levels, strength, flats }
             }
+            Parameters::Orbits { group, orbits, levels, strength } => {
+                let columns = levels
+                    .into_iter()
+                    .map(|levels| {
+                        let mut shifts = self.numbers_line(group.len() + usize::from(orbits), levels)?;
+                        let base = shifts.split_off(group.len());
+                        Ok(OrbitColumn { levels, shifts, base })
+                    })
+                    .collect::<Result<_, _>>()?;
+                SeedKind::Orbits { group, strength, columns }
+            }
         })
     }
 
@@ -312,6 +329,16 @@ impl<'a> Reader<'a> {
 
     fn group(&mut self) -> Result<Vec<u16>, SeedError> {
         let text = self.value("group")?;
+        self.group_of(text)
+    }
+
+    fn levels(&mut self) -> Result<Vec<u16>, SeedError> {
+        let text = self.value("levels")?;
+        let levels = self.numbers(text)?;
+        if levels.iter().any(|&s| s < 2) { self.fail(SeedReason::Levels) } else { Ok(levels) }
+    }
+
+    fn group_of(&self, text: &str) -> Result<Vec<u16>, SeedError> {
         let factors = self.numbers(text)?;
         match AbelianGroup::new(&factors) {
             Ok(_) => Ok(factors),

@@ -188,6 +188,7 @@ fn a_seed_cut_at_any_byte_is_refused() {
         "quasi-difference-19-06-01",
         "subspaces-0064-2-8x6-4x7",
         "flats-0054-3-3x5-2x1",
+        "orbits-0012-2-3x1-2x4",
     ] {
         let text = files::FILES.iter().find(|f| f.0 == name).unwrap().1;
         for cut in 0..text.len() {
@@ -214,6 +215,7 @@ fn every_rule_of_the_format_refuses() {
     let (scheme, circulants, turyn) = ("scheme-06-06-03", "circulants-007", "turyn-016");
     let (vector, quasi) = ("v-vector-02-03", "quasi-difference-19-06-01");
     let (subspaces, flats) = ("subspaces-0064-2-8x6-4x7", "flats-0054-3-3x5-2x1");
+    let (orbits, turned) = ("orbits-0012-2-3x1-2x4", "orbits-0024-2-6x1-2x14");
     let number = |text: &str| Number(text.to_owned());
     let cases = [
         (scheme, 1, "title: x", Key("name")),
@@ -283,6 +285,14 @@ fn every_rule_of_the_format_refuses() {
         (flats, 7, "strength: x", number("x")),
         (flats, 11, "2 0 0 0 0 0", number("2")),
         (flats, 12, "0 1 0 1 2 3", number("3")),
+        (orbits, 3, "group: 0", Group),
+        (orbits, 4, "orbits: 0", number("0")),
+        (orbits, 5, "levels: 3 2 2 2 1", Levels),
+        (orbits, 5, "levels: 3 2 2 2", End),
+        (orbits, 6, "strength: x", number("x")),
+        (orbits, 10, "2 1 0 0 0 2 0 1 2 1 1 3", number("3")),
+        (orbits, 10, "2 1 0 0 0 2 0 1 2 1 1", Entries { expected: 12, found: 11 }),
+        (turned, 10, "0 1 2 3 4 5 0 1 2 3 4 5", Entries { expected: 13, found: 12 }),
     ];
     for (name, line, with, reason) in cases {
         assert_eq!(changed(name, line, with).reason, reason, "{name} line {line}: {with:?}");
