@@ -32,8 +32,7 @@ fn main() -> Result<(), Box<dyn std::error::Error>> {
         found.attempt,
         start.elapsed().as_secs_f64()
     );
-    let source =
-        format!(
+    let source = format!(
         "computed for this project: examples/find_array {runs} \"{mix}\" {} {seed} {attempts} {pool}",
         words[2]
     );
