@@ -36,7 +36,7 @@ pub struct Seed {
 
 /// What a seed is, with its data. Elements of groups are in the encoding of
 /// [`AbelianGroup`](crate::algebra::AbelianGroup), elements of fields in that of
-/// [`Field`](crate::algebra::Field).
+/// [`Field`].
 #[derive(Clone, Debug, PartialEq, Eq)]
 #[non_exhaustive]
 pub enum SeedKind {
