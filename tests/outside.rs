@@ -147,3 +147,71 @@ fn centred_columns_are_orthogonal_vectors() {
         }
     }
 }
+
+/// The number of sets of four rows whose entries multiply to the same sign in every column.
+fn closed_quadruples(rows: &[Vec<i8>]) -> usize {
+    let closed = |q: [usize; 4]| {
+        let product = |j: usize| q.iter().map(|&i| rows[i][j]).product::<i8>();
+        (1..rows.len()).all(|j| product(j) == product(0))
+    };
+    let n = rows.len();
+    let mut count = 0;
+    for a in 0..n {
+        for b in a + 1..n {
+            for c in b + 1..n {
+                count += (c + 1..n).filter(|&d| closed([a, b, c, d])).count();
+            }
+        }
+    }
+    count
+}
+
+/// Hadamard matrices of order 16 fall into five classes (M. Hall 1961). Their saturated arrays have
+/// *one* word-length pattern: any two runs of OA(N, 2^(N−1)) differ in N/2 places, and the pattern
+/// is a function of the distances alone. What tells classes apart is the number of closed
+/// quadruples of rows: 140, 76, 44, 28 and 28 (from memory; the last two classes are transposes of
+/// one another, so four values are all that can be seen).
+#[test]
+fn classes_of_hadamard_matrices_of_order_16() {
+    let sylvester = trysquare::construct::hadamard::sylvester(4).unwrap();
+    let first: Vec<Vec<i8>> = (0..16).map(|i| (0..16).map(|j| sylvester.entry(i, j)).collect()).collect();
+    let mut random = trysquare::hunt::Random::new(16);
+    let (mut counts, mut patterns) = (std::collections::BTreeSet::new(), std::collections::BTreeSet::new());
+    for _ in 0..40 {
+        let mut rows = first.clone();
+        for _ in 0..random.below(6) {
+            switch(&mut rows, &mut random);
+        }
+        counts.insert(closed_quadruples(&rows));
+        let matrix = trysquare::construct::hadamard::Hadamard::from_rows(&rows).unwrap();
+        let array = matrix.to_array().unwrap();
+        let judged = certify(&array, &Demand::strength(2).thorough()).unwrap();
+        patterns.insert(judged.certificate.word_length_pattern.unwrap());
+    }
+    assert_eq!(counts.into_iter().collect::<Vec<_>>(), [28, 44, 76, 140]);
+    assert_eq!(patterns.len(), 1);
+}
+
+/// Takes four rows that form a closed quadruple and changes their signs in the four columns of one
+/// kind, which keeps a Hadamard matrix one.
+fn switch(rows: &mut [Vec<i8>], random: &mut trysquare::hunt::Random) {
+    for _ in 0..10_000 {
+        let mut four = [0; 4].map(|_: usize| random.below(16));
+        four.sort_unstable();
+        let kind = |rows: &[Vec<i8>], j: usize| four.map(|i| rows[i][j] * rows[four[0]][j]);
+        let like = random.below(16);
+        let columns: Vec<usize> = (0..16).filter(|&j| kind(rows, j) == kind(rows, like)).collect();
+        let product = |j: usize| four.iter().map(|&i| rows[i][j]).product::<i8>();
+        if four.windows(2).all(|w| w[0] < w[1])
+            && columns.len() == 4
+            && (1..16).all(|j| product(j) == product(0))
+        {
+            for i in four {
+                for &j in &columns {
+                    rows[i][j] = -rows[i][j];
+                }
+            }
+            return;
+        }
+    }
+}

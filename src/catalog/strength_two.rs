@@ -74,7 +74,8 @@ fn developed<'a>(shelf: &'a Shelf, n: u32, candidates: &mut Candidates<'a>) {
         let (Some(best), Ok(rows)) = (shelf.schemes.best(r, s), u16::try_from(r)) else { continue };
         let mut bag = Bag::from_pairs([(level, best.columns)]);
         bag.add(rows, 1);
-        let source = "difference scheme (Bose & Bush 1952)";
+        let source =
+            if best.columns == 1 { "full factorial" } else { "difference scheme (Bose & Bush 1952)" };
         candidates.offer(bag, source, move || Arc::new(Recipe::Developed { scheme: best.recipe }));
     }
 }
