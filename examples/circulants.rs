@@ -8,7 +8,9 @@ use trysquare::hunt::{FourCirculants, circulants_seed};
 fn main() -> ExitCode {
     let words: Vec<String> = std::env::args().skip(1).collect();
     let Some(hunt) = request(&words) else {
-        eprintln!("write: circulants LENGTH GENERATORS SEED SAMPLES POOL PAIRS, as in: circulants 37 10 1 1000 500 100000");
+        eprintln!(
+            "write: circulants LENGTH GENERATORS SEED SAMPLES POOL PAIRS, as in: circulants 37 10 1 1000 500 100000"
+        );
         return ExitCode::from(2);
     };
     let source =

@@ -39,12 +39,19 @@ fn seed(words: &[String]) -> Result<String, String> {
                 t_matrices(small(length)?, &generators, number(seed)?, number(tries)?).map_err(text)?;
             (found.ok_or("none in this sample; write another seed or more tries")?, williamson)
         }
-        _ => return Err("write: products TURYN WILLIAMSON, or: products LENGTH GENERATORS SEED TRIES WILLIAMSON".into()),
+        _ => {
+            return Err(
+                "write: products TURYN WILLIAMSON, or: products LENGTH GENERATORS SEED TRIES WILLIAMSON"
+                    .into(),
+            );
+        }
     };
     let Some(SeedKind::FourCirculants { rows: w, .. }) = find(williamson).map(|s| s.kind) else {
         return Err(format!("{williamson} is no set of four circulants in the catalogue"));
     };
-    let rows = cooper_wallis(t.each_ref().map(Vec::as_slice), w.each_ref().map(Vec::as_slice)).map_err(text)?;
-    let source = format!("computed for this project: cargo run --release --example products -- {}", words.join(" "));
+    let rows =
+        cooper_wallis(t.each_ref().map(Vec::as_slice), w.each_ref().map(Vec::as_slice)).map_err(text)?;
+    let source =
+        format!("computed for this project: cargo run --release --example products -- {}", words.join(" "));
     circulants_seed(&[1], &rows, &source).map_err(text)
 }

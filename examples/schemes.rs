@@ -12,11 +12,14 @@ use trysquare::hunt::{SchemeHunt, Symmetry, scheme_seed};
 fn main() -> ExitCode {
     let words: Vec<String> = std::env::args().skip(1).collect();
     let Some(hunt) = request(&words) else {
-        eprintln!("write: schemes GROUP BLOCKS MOVES FIXES FIXED COLUMNS SEED NODES TRIES, as in: schemes 3 5,1 1,1,0 - 0 6 1 1000 100");
+        eprintln!(
+            "write: schemes GROUP BLOCKS MOVES FIXES FIXED COLUMNS SEED NODES TRIES, as in: schemes 3 5,1 1,1,0 - 0 6 1 1000 100"
+        );
         return ExitCode::from(2);
     };
     let source =
         format!("computed for this project: cargo run --release --example schemes -- {}", words.join(" "));
+    // No column at all is no scheme; `scheme_seed` refuses it.
     match hunt.run().and_then(|columns| Ok((columns.len(), scheme_seed(&hunt.group, &columns, &source)?))) {
         Ok((found, text)) => {
             print!("{text}");

@@ -236,7 +236,8 @@ mod tests {
     fn scheme_columns() {
         let book = SchemeBook::new(Arc::new(HadamardBook::new()));
         let index_one = (2..=24).map(|s| (s, s));
-        for (r, s) in (2..=7).flat_map(|s| (s..=36).step_by(s as usize).map(move |r| (r, s))).chain(index_one) {
+        for (r, s) in (2..=7).flat_map(|s| (s..=36).step_by(s as usize).map(move |r| (r, s))).chain(index_one)
+        {
             let best = book.best(r, s).unwrap();
             let d = best.recipe.build().unwrap();
             assert_eq!((d.rows(), d.columns()), (r as usize, best.columns as usize));

@@ -84,7 +84,10 @@ impl FourCirculants {
         }
         let m = self.length;
         if let Some(g) = self.generators.iter().find(|g| g.gcd(&m) != 1) {
-            return Err(ConstructError::condition(NAME, format!("multipliers are units modulo {m}, not {g}")));
+            return Err(ConstructError::condition(
+                NAME,
+                format!("multipliers are units modulo {m}, not {g}"),
+            ));
         }
         let mut group = vec![1u16];
         let mut at = 0;
@@ -158,7 +161,8 @@ impl Frame {
                 bits
             })
             .collect();
-        let shifts = partition(1, &[0, 1]).iter().map(|o| (o[0], o.len() as i64, random.bits() | 1)).collect();
+        let shifts =
+            partition(1, &[0, 1]).iter().map(|o| (o[0], o.len() as i64, random.bits() | 1)).collect();
         let units: Vec<usize> = (1..length).filter(|u| u.gcd(&length) == 1).collect();
         // One unit per coset of ±H: the others give the same autocorrelations.
         let units = units.iter().copied().filter(|&u| orbit(u, &[0, 1])[0] == u).collect();
@@ -326,7 +330,9 @@ impl Pool {
             let one: HashSet<i64> = self.rows.iter().map(|r| r.sum_squared).collect();
             one.iter().flat_map(|a| one.iter().map(move |b| a + b)).collect()
         };
-        let fits = |i: usize, j: usize| sums.contains(&(total - self.rows[i].sum_squared - self.rows[j].sum_squared));
+        let fits = |i: usize, j: usize| {
+            sums.contains(&(total - self.rows[i].sum_squared - self.rows[j].sum_squared))
+        };
         let mut table: Vec<(u64, u32, u32)> = Vec::new();
         for i in 0..self.base {
             for j in 0..self.rows.len() {
@@ -356,7 +362,8 @@ impl Pool {
     }
 
     fn cancel(&self, four: [usize; 4]) -> bool {
-        (0..self.width).all(|c| four.iter().map(|&i| i32::from(self.plain[i * self.width + c])).sum::<i32>() == 0)
+        (0..self.width)
+            .all(|c| four.iter().map(|&i| i32::from(self.plain[i * self.width + c])).sum::<i32>() == 0)
     }
 }
 
@@ -385,5 +392,65 @@ impl Index {
         let from = part.partition_point(|e| e.0 < hash);
         let to = part.partition_point(|e| e.0 <= hash);
         &part[from..to]
+    }
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+    use crate::construct::hadamard::goethals_seidel;
+
+    fn hunt(length: u16, generators: &[u16], samples: u64) -> FourCirculants {
+        FourCirculants { length, generators: generators.to_vec(), seed: 3, samples, pool: 400, pairs: 20_000 }
+    }
+
+    #[test]
+    fn finds_what_the_definition_accepts() {
+        for (m, generators) in
+            [(3, &[2][..]), (5, &[4]), (7, &[2]), (13, &[3]), (21, &[4]), (37, &[10]), (9, &[1])]
+        {
+            let request = hunt(m, generators, 5000);
+            let rows = request.run().unwrap().unwrap_or_else(|| panic!("length {m}"));
+            let h = goethals_seidel(rows.each_ref().map(Vec::as_slice)).unwrap();
+            assert!(h.is_hadamard() && h.order() == 4 * usize::from(m));
+            let group = request.multipliers().unwrap();
+            for row in &rows {
+                for (i, &h) in (0..row.len()).flat_map(|i| group.iter().map(move |h| (i, h))) {
+                    assert_eq!(row[i * usize::from(h) % row.len()], row[i]);
+                }
+            }
+            assert_eq!(request.run().unwrap(), Some(rows), "the same again");
+        }
+    }
+
+    /// No four rows of length 7 constant on the squares and on the others with 0 have it: 28 is no
+    /// sum of four squares of ±1 ± 6.
+    #[test]
+    fn finds_nothing_where_there_is_nothing() {
+        assert_eq!(hunt(7, &[3], 1000).run().unwrap(), None);
+        assert_eq!(hunt(249, &[4], 1000).run().unwrap(), None);
+    }
+
+    #[test]
+    fn refuses_what_is_no_request() {
+        assert!(hunt(2, &[1], 1).run().is_err() && hunt(256, &[3], 1).run().is_err());
+        assert!(hunt(9, &[3], 1).run().is_err() && hunt(9, &[0], 1).run().is_err());
+        assert_eq!(hunt(9, &[4], 1).multipliers().unwrap(), [1, 4, 7]);
+    }
+
+    /// The autocorrelation by word operations against the sum of products, across word borders.
+    #[test]
+    fn autocorrelations_by_definition() {
+        let mut random = Random::new(9);
+        for m in [3usize, 63, 64, 65, 127, 128, 129, 191, 192, 255] {
+            let frame = Frame::new(m, &[1], &mut random);
+            let mut bits = [0; WORDS];
+            (0..m).for_each(|i| bits[i / 64] |= (random.bits() & 1) << (i % 64));
+            let signs = frame.signs(&bits);
+            for k in 1..m {
+                let plain: i64 = (0..m).map(|i| i64::from(signs[i]) * i64::from(signs[(i + k) % m])).sum();
+                assert_eq!(frame.autocorrelation(&bits, k), plain, "{m} {k}");
+            }
+        }
     }
 }

@@ -26,7 +26,8 @@ pub fn t_matrices(
     seed: u64,
     tries: u64,
 ) -> Result<Option<[Vec<i8>; 4]>, ConstructError> {
-    let request = FourCirculants { length, generators: generators.to_vec(), seed, samples: 0, pool: 0, pairs: 0 };
+    let request =
+        FourCirculants { length, generators: generators.to_vec(), seed, samples: 0, pool: 0, pairs: 0 };
     let group = request.multipliers()?;
     let t = usize::from(length);
     // The orbit of each place, named by its smallest place.
@@ -46,9 +47,30 @@ pub fn t_matrices(
             _ => 0,
         };
         if shifts.iter().all(|&k| (0..t).map(|i| product(symbol[i], symbol[(i + k) % t])).sum::<i32>() == 0) {
-            let row = |r: u8| symbol.iter().map(|&s| if s >> 1 == r { 1 - 2 * (s & 1) as i8 } else { 0 }).collect();
+            let row =
+                |r: u8| symbol.iter().map(|&s| if s >> 1 == r { 1 - 2 * (s & 1) as i8 } else { 0 }).collect();
             return Ok(Some([0, 1, 2, 3].map(row)));
         }
     }
     Ok(None)
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+    use crate::construct::hadamard::{cooper_wallis, goethals_seidel};
+
+    #[test]
+    fn what_is_found_multiplies() {
+        let one: [&[i8]; 4] = [&[1]; 4];
+        for (length, generators) in [(3, &[1][..]), (5, &[1]), (7, &[1]), (13, &[3]), (19, &[7])] {
+            let t =
+                t_matrices(length, generators, 5, 1_000_000).unwrap().unwrap_or_else(|| panic!("{length}"));
+            let rows = cooper_wallis(t.each_ref().map(Vec::as_slice), one).unwrap();
+            let h = goethals_seidel(rows.each_ref().map(Vec::as_slice)).unwrap();
+            assert!(h.is_hadamard() && h.order() == 4 * usize::from(length));
+        }
+        assert_eq!(t_matrices(47, &[2], 1, 1000).unwrap(), None);
+        assert!(t_matrices(9, &[3], 1, 1).is_err());
+    }
 }

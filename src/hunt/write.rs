@@ -37,9 +37,8 @@ pub fn circulants_seed(
 pub fn scheme_seed(group: &[u16], columns: &[Vec<u16>], source: &str) -> Result<String, ConstructError> {
     let d = from_starter(group, columns)?;
     let (r, c, s) = (d.rows(), d.columns(), d.order());
-    let expanded: String = (0..r)
-        .map(|i| numbers(&(0..c).map(|j| d.entry(i, j)).collect::<Vec<_>>()) + "\n")
-        .collect();
+    let expanded: String =
+        (0..r).map(|i| numbers(&(0..c).map(|j| d.entry(i, j)).collect::<Vec<_>>()) + "\n").collect();
     let body: String = columns.iter().map(|column| numbers(column) + "\n").collect();
     Ok(format!(
         "name: scheme-{r:02}-{c:02}-{s:02}\nkind: difference-scheme\nrows: {r}\ncolumns: {c}\ngroup: {}\n\
@@ -54,7 +53,8 @@ fn numbers(of: &[u16]) -> String {
 }
 
 fn signs(rows: &[Vec<i8>]) -> String {
-    let line = |row: &Vec<i8>| row.iter().map(|&e| if e > 0 { '+' } else { '-' }).chain(['\n']).collect::<String>();
+    let line =
+        |row: &Vec<i8>| row.iter().map(|&e| if e > 0 { '+' } else { '-' }).chain(['\n']).collect::<String>();
     rows.iter().map(line).collect()
 }
 
@@ -76,7 +76,9 @@ mod tests {
         for name in ["circulants-007", "scheme-06-06-03", "scheme-20-09-04", "scheme-12-06-12"] {
             let seed = find(name).unwrap();
             let text = match &seed.kind {
-                SeedKind::FourCirculants { multipliers, rows } => circulants_seed(multipliers, rows, &seed.source),
+                SeedKind::FourCirculants { multipliers, rows } => {
+                    circulants_seed(multipliers, rows, &seed.source)
+                }
                 SeedKind::DifferenceScheme { group, columns } => scheme_seed(group, columns, &seed.source),
                 other => panic!("{other:?}"),
             };

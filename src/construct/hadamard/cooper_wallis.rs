@@ -61,7 +61,9 @@ pub fn cooper_wallis(t: [&[i8]; 4], w: [&[i8]; 4]) -> Result<[Vec<i8>; 4], Const
     for (name, row) in ["A", "B", "C", "D"].iter().zip(w) {
         check_signs(NAME, name, row)?;
         if let Some(k) = (1..n).find(|&k| row[k] != row[n - k]) {
-            return fail(format!("the rows of Williamson's matrices are symmetric, but not {name} at place {k}"));
+            return fail(format!(
+                "the rows of Williamson's matrices are symmetric, but not {name} at place {k}"
+            ));
         }
     }
     for (what, rows) in [("T-matrices", t), ("Williamson's matrices", w)] {
