@@ -423,8 +423,8 @@ mod tests {
         }
     }
 
-    /// No four rows of length 7 constant on the squares and on the others with 0 have it: 28 is no
-    /// sum of four squares of ±1 ± 6.
+    /// Rows of length 7 constant on 1 … 6 have sums ±5 and ±7, and 28 is no sum of four squares of
+    /// these; for length 249 the sample is all there is.
     #[test]
     fn finds_nothing_where_there_is_nothing() {
         assert_eq!(hunt(7, &[3], 1000).run().unwrap(), None);

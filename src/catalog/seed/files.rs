@@ -68,6 +68,7 @@ embedded! {
     "scheme-28-14-04"
     "scheme-30-15-03"
     "scheme-33-13-03"
+    "scheme-35-09-05"
     "turyn-016"
     "turyn-020"
     "turyn-022"
