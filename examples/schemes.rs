@@ -19,6 +19,7 @@ fn main() -> ExitCode {
     };
     let source =
         format!("computed for this project: cargo run --release --example schemes -- {}", words.join(" "));
+    // No column at all is no scheme; `scheme_seed` refuses it.
     match hunt.run().and_then(|columns| Ok((columns.len(), scheme_seed(&hunt.group, &columns, &source)?))) {
         Ok((found, text)) => {
             print!("{text}");

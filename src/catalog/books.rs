@@ -230,12 +230,25 @@ fn lock<T>(mutex: &Mutex<T>) -> std::sync::MutexGuard<'_, T> {
 mod tests {
     use super::*;
 
-    /// The columns of the schemes with r ≤ 36 rows over groups of order s ≤ 7, and of those with index 1
-    /// up to 24, are at least those that `construct::scheme` states, and each is built and judged.
+    /// The schemes with r ≤ 36 rows over groups of order s ≤ 7, and those of index 1 up to 24, are
+    /// built, judged and printed; where a stored one decides, with the columns we have reached.
     #[test]
     fn scheme_columns() {
         let book = SchemeBook::new(Arc::new(HadamardBook::new()));
         let index_one = (2..=24).map(|s| (s, s));
+        for (r, s, c) in [
+            (15, 3, 9),
+            (21, 3, 21),
+            (30, 3, 15),
+            (33, 3, 13),
+            (20, 4, 10),
+            (28, 4, 14),
+            (15, 5, 8),
+            (35, 5, 9),
+            (20, 20, 5),
+        ] {
+            assert_eq!(book.best(r, s).unwrap().columns, c, "{r} {s}");
+        }
         for (r, s) in (2..=7).flat_map(|s| (s..=36).step_by(s as usize).map(move |r| (r, s))).chain(index_one)
         {
             let best = book.best(r, s).unwrap();

@@ -394,3 +394,63 @@ impl Index {
         &part[from..to]
     }
 }
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+    use crate::construct::hadamard::goethals_seidel;
+
+    fn hunt(length: u16, generators: &[u16], samples: u64) -> FourCirculants {
+        FourCirculants { length, generators: generators.to_vec(), seed: 3, samples, pool: 400, pairs: 20_000 }
+    }
+
+    #[test]
+    fn finds_what_the_definition_accepts() {
+        for (m, generators) in
+            [(3, &[2][..]), (5, &[4]), (7, &[2]), (13, &[3]), (21, &[4]), (37, &[10]), (9, &[1])]
+        {
+            let request = hunt(m, generators, 5000);
+            let rows = request.run().unwrap().unwrap_or_else(|| panic!("length {m}"));
+            let h = goethals_seidel(rows.each_ref().map(Vec::as_slice)).unwrap();
+            assert!(h.is_hadamard() && h.order() == 4 * usize::from(m));
+            let group = request.multipliers().unwrap();
+            for row in &rows {
+                for (i, &h) in (0..row.len()).flat_map(|i| group.iter().map(move |h| (i, h))) {
+                    assert_eq!(row[i * usize::from(h) % row.len()], row[i]);
+                }
+            }
+            assert_eq!(request.run().unwrap(), Some(rows), "the same again");
+        }
+    }
+
+    /// Rows of length 7 constant on 1 … 6 have sums ±5 and ±7, and 28 is no sum of four squares of
+    /// these; for length 249 the sample is all there is.
+    #[test]
+    fn finds_nothing_where_there_is_nothing() {
+        assert_eq!(hunt(7, &[3], 1000).run().unwrap(), None);
+        assert_eq!(hunt(249, &[4], 1000).run().unwrap(), None);
+    }
+
+    #[test]
+    fn refuses_what_is_no_request() {
+        assert!(hunt(2, &[1], 1).run().is_err() && hunt(256, &[3], 1).run().is_err());
+        assert!(hunt(9, &[3], 1).run().is_err() && hunt(9, &[0], 1).run().is_err());
+        assert_eq!(hunt(9, &[4], 1).multipliers().unwrap(), [1, 4, 7]);
+    }
+
+    /// The autocorrelation by word operations against the sum of products, across word borders.
+    #[test]
+    fn autocorrelations_by_definition() {
+        let mut random = Random::new(9);
+        for m in [3usize, 63, 64, 65, 127, 128, 129, 191, 192, 255] {
+            let frame = Frame::new(m, &[1], &mut random);
+            let mut bits = [0; WORDS];
+            (0..m).for_each(|i| bits[i / 64] |= (random.bits() & 1) << (i % 64));
+            let signs = frame.signs(&bits);
+            for k in 1..m {
+                let plain: i64 = (0..m).map(|i| i64::from(signs[i]) * i64::from(signs[(i + k) % m])).sum();
+                assert_eq!(frame.autocorrelation(&bits, k), plain, "{m} {k}");
+            }
+        }
+    }
+}

@@ -41,7 +41,8 @@ impl Symmetry {
             image.iter().copied().eq(0..n)
         };
         let s = group.order() as usize;
-        bijective(&mut self.rows.clone(), rows)
+        self.values.len() == s
+            && bijective(&mut self.rows.clone(), rows)
             && bijective(&mut self.values.iter().map(|&v| usize::from(v)).collect(), s)
             && (0..s as u16).all(|a| {
                 (0..s as u16).all(|b| {
@@ -347,5 +348,64 @@ impl Walk<'_> {
             }
         }
         good
+    }
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+    use crate::construct::scheme::from_starter;
+
+    fn hunt(group: &[u16], blocks: &[usize], zero: bool, columns: usize) -> SchemeHunt {
+        let order: u16 = group.iter().product();
+        let moves = Symmetry::of_blocks(blocks, 1, 1, 0, &(0..order).collect::<Vec<_>>());
+        let group = group.to_vec();
+        SchemeHunt { group, moves, fixes: None, fixed: 0, zero, columns, seed: 1, nodes: 100_000, tries: 100 }
+    }
+
+    #[test]
+    fn finds_what_the_definition_accepts() {
+        for (group, blocks, zero, c) in [
+            (&[3][..], &[5, 1][..], true, 6),
+            (&[3], &[10, 10, 1], true, 21),
+            (&[2, 2], &[5, 5, 5, 5], false, 10),
+            (&[2, 2, 5], &[5, 5, 5, 5], false, 5),
+        ] {
+            let mut request = hunt(group, blocks, zero, c);
+            request.nodes = 1_000_000;
+            let columns = request.run().unwrap();
+            assert_eq!(columns.len(), c, "{group:?} {blocks:?}");
+            assert!(from_starter(group, &columns).unwrap().is_difference_scheme());
+            assert_eq!(request.run().unwrap(), columns, "the same again");
+        }
+    }
+
+    #[test]
+    fn columns_fixed_by_a_symmetry() {
+        let mut request = hunt(&[3], &[3, 3, 3], true, 5);
+        request.fixed = 2;
+        let columns = request.run().unwrap();
+        assert!(columns.len() >= 3);
+        for column in &columns[..3] {
+            assert_eq!(&request.moves.apply(column), column);
+        }
+        let mut request = hunt(&[3], &[7, 7, 7, 1, 1, 1], true, 2);
+        request.fixes = Some(Symmetry::of_blocks(&[7, 7, 7, 1, 1, 1], 2, 0, 0, &[0, 1, 2]));
+        if let Some(column) = request.run().unwrap().get(1) {
+            assert_eq!(&request.fixes.unwrap().apply(column), column);
+        }
+    }
+
+    #[test]
+    fn refuses_what_is_no_symmetry() {
+        let good = hunt(&[3], &[5, 1], true, 6);
+        let with = |moves: Symmetry| SchemeHunt { moves, ..good.clone() }.run();
+        assert!(with(Symmetry { rows: vec![0, 0, 1, 2, 3, 4], ..good.moves.clone() }).is_err());
+        assert!(with(Symmetry { values: vec![1, 2, 0], ..good.moves.clone() }).is_err());
+        assert!(with(Symmetry { values: vec![0, 1], ..good.moves.clone() }).is_err());
+        assert!(with(Symmetry { rows: vec![1, 0, 2, 3], ..good.moves.clone() }).is_err());
+        assert!(SchemeHunt { group: vec![1], ..good.clone() }.run().is_err());
+        let fixes = Some(Symmetry { rows: vec![0], values: vec![0, 1, 2] });
+        assert!(SchemeHunt { fixes, ..good.clone() }.run().is_err());
     }
 }

@@ -54,3 +54,23 @@ pub fn t_matrices(
     }
     Ok(None)
 }
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+    use crate::construct::hadamard::{cooper_wallis, goethals_seidel};
+
+    #[test]
+    fn what_is_found_multiplies() {
+        let one: [&[i8]; 4] = [&[1]; 4];
+        for (length, generators) in [(3, &[1][..]), (5, &[1]), (7, &[1]), (13, &[3]), (19, &[7])] {
+            let t =
+                t_matrices(length, generators, 5, 1_000_000).unwrap().unwrap_or_else(|| panic!("{length}"));
+            let rows = cooper_wallis(t.each_ref().map(Vec::as_slice), one).unwrap();
+            let h = goethals_seidel(rows.each_ref().map(Vec::as_slice)).unwrap();
+            assert!(h.is_hadamard() && h.order() == 4 * usize::from(length));
+        }
+        assert_eq!(t_matrices(47, &[2], 1, 1000).unwrap(), None);
+        assert!(t_matrices(9, &[3], 1, 1).is_err());
+    }
+}

@@ -235,3 +235,50 @@ fn sylvester_equals_scipy() {
     }
     assert_eq!(compared, 9);
 }
+
+#[test]
+fn cooper_wallis_multiplies_and_refuses() {
+    let williamson: [[i8; 3]; 4] = [[1, 1, 1], [1, -1, -1], [1, -1, -1], [1, -1, -1]];
+    let w = williamson.each_ref().map(|r| r.as_slice());
+    let single: [&[i8]; 4] = [&[1], &[0], &[0], &[0]];
+    let mut made = 0;
+    // All T-matrices of order 2, and those of order 5 in which each place is any of eight symbols.
+    for length in [1usize, 2, 5] {
+        for code in 0..8usize.pow(length as u32) {
+            let symbol = |i: usize| code / 8usize.pow(i as u32) % 8;
+            let rows: [Vec<i8>; 4] = [0, 1, 2, 3].map(|r| {
+                (0..length)
+                    .map(|i| if symbol(i) / 2 == r { 1 - 2 * (symbol(i) % 2) as i8 } else { 0 })
+                    .collect()
+            });
+            if let Ok(four) = cooper_wallis(rows.each_ref().map(Vec::as_slice), w) {
+                made += 1;
+                if made <= 60 || code % 64 == 0 {
+                    check(&goethals_seidel(four.each_ref().map(Vec::as_slice)).unwrap(), 12 * length);
+                }
+            }
+        }
+    }
+    assert!(made > 60);
+    let reason = |t, w| cooper_wallis(t, w).unwrap_err().to_string();
+    assert!(reason([&[], &[], &[], &[]], w).contains("coprime"));
+    assert!(reason([&[1, 0, 0], &[0, 1, 0], &[0, 0, 1], &[0, 0, 0]], w).contains("coprime"));
+    assert!(reason([&[1], &[1], &[0], &[0]], w).contains("exactly one"));
+    assert!(reason([&[2], &[0], &[0], &[0]], w).contains("exactly one"));
+    assert!(reason([&[1, 1], &[0, 0], &[0, 0], &[0, 0]], w).contains("T-matrices sum to 0 at shift 1"));
+    assert!(reason(single, [&[1, 1, -1], w[1], w[2], w[3]]).contains("symmetric"));
+    assert!(reason(single, [&[1, 1, 1]; 4]).contains("Williamson's matrices sum to 0"));
+    assert!(reason(single, [&[1, 0, 0], w[1], w[2], w[3]]).contains("entry 1 of A is 0"));
+}
+
+/// The Hadamard matrix of T-sequences alone is the one of `turyn_type`'s path.
+#[test]
+fn t_sequences_fill_each_place_once() {
+    let t = t_sequences(&[1, 1], &[1, 1], &[1, -1], &[1]).unwrap();
+    assert!((0..5).all(|i| t.iter().filter(|r| r[i] != 0).count() == 1));
+    assert!(t_sequences(&[1, 1], &[1, 1], &[1, 1], &[1]).is_err());
+    let one: [&[i8]; 4] = [&[1]; 4];
+    let rows = cooper_wallis(t.each_ref().map(Vec::as_slice), one).unwrap();
+    let h = goethals_seidel(rows.each_ref().map(Vec::as_slice)).unwrap();
+    check(&h, 20);
+}
