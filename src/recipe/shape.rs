@@ -266,13 +266,21 @@ impl Recipe {
             }
             Self::Kerdock { .. } => 5,
             Self::Juxtapose { parts } => parts.iter().map(|p| p.of.strength()).min().unwrap_or(0),
-            Self::LevelProduct { left, right, .. } => guaranteed(left).min(guaranteed(right)),
+            Self::LevelProduct { left, right, .. } => self.capped(guaranteed(left).min(guaranteed(right))),
             Self::Arrange { of, split, .. } => {
-                split.iter().map(|s| guaranteed(&s.by)).fold(of.strength(), u32::min)
+                self.capped(split.iter().map(|s| guaranteed(&s.by)).fold(guaranteed(of), u32::min))
             }
             Self::Foldover { of } => of.strength() + 1,
             Self::Copies { of, .. } => of.strength(),
         }
+    }
+}
+
+impl Recipe {
+    /// `strength`, at most the number of factors: that of a full factorial.
+    fn capped(&self, strength: u32) -> u32 {
+        let factors = self.levels().map_or(0, |levels| u32::try_from(levels.len()).unwrap_or(u32::MAX));
+        strength.min(factors)
     }
 }
 
