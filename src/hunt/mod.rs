@@ -6,6 +6,7 @@
 //! | `circulants` | four rows for the array of Goethals and Seidel |
 //! | `flats` | slices, unions of flats, that are an array of strength 3 together |
 //! | `latin` | quasi-difference matrices and V vectors |
+//! | `quadratics` | difference schemes over Z3 in blocks of order 3 |
 //! | `schemes` | difference schemes with a prescribed symmetry |
 //! | `slices` | slices of 16 runs from Hadamard matrices, an array of strength 3 together |
 //! | `subspaces` | subspaces of which any t are independent |
@@ -20,6 +21,7 @@ pub mod blocks;
 mod circulants;
 pub mod flats;
 pub mod latin;
+mod quadratics;
 mod random;
 mod schemes;
 pub mod slices;
@@ -29,6 +31,7 @@ mod t_matrices;
 mod write;
 
 pub use circulants::FourCirculants;
+pub use quadratics::Quadratics;
 pub use random::Random;
 pub use schemes::{SchemeHunt, Symmetry};
 pub use t_matrices::t_matrices;
