@@ -82,7 +82,7 @@ embedded! {
     "scheme-20-10-04"
     "scheme-21-21-03"
     "scheme-24-07-24"
-    "scheme-24-21-03"
+    "scheme-24-24-03"
     "scheme-28-06-28"
     "scheme-28-14-04"
     "scheme-30-15-03"
