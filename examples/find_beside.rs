@@ -2,7 +2,7 @@
 //! `find_beside FRAME BASE SYMMETRY TWOS THREES SEED ATTEMPTS LOOKS START STEPS`; prints the seed.
 //!
 //! FRAME: radices, `6x6`. BASE: forms as levels and coefficients, `6:1,0 6:0,1`, or `random K MIX`,
-//! symmetric under the first K coordinates. SYMMETRY: `none`, or generators with a semicolon
+//! symmetric under the first K coordinates (`moving` for `random`: these move all levels). SYMMETRY: `none`, or generators with a semicolon
 //! between, each a word per coordinate with a comma between: `2x+1` or the images `0-2-3-1`.
 
 use trysquare::hunt::beside::{Base, BesideHunt, hunt_beside};
@@ -47,10 +47,11 @@ fn main() -> Result<(), Fail> {
 }
 
 fn read_base(text: &str) -> Result<Base, Fail> {
-    if let Some(rest) = text.strip_prefix("random ") {
+    let moving = text.starts_with("moving ");
+    if let Some(rest) = text.strip_prefix("random ").or(text.strip_prefix("moving ")) {
         let (coordinates, mix) = rest.split_once(' ').ok_or("write: random K MIX")?;
         let levels = mix.parse::<Mix>()?.levels().to_vec();
-        return Ok(Base::Random { levels, coordinates: coordinates.parse()? });
+        return Ok(Base::Random { levels, coordinates: coordinates.parse()?, moving });
     }
     let form = |word: &str| -> Result<(u16, Vec<u16>), Fail> {
         let (levels, shifts) = word.split_once(':').ok_or("write forms as 6:1,0")?;

@@ -31,6 +31,8 @@ pub enum Base {
         levels: Vec<u16>,
         /// How many coordinates of the frame are the group.
         coordinates: usize,
+        /// Whether the generators must move the levels, see [`SymmetricHunt::moving`].
+        moving: bool,
     },
 }
 
@@ -165,13 +167,14 @@ impl Setting<'_> {
     }
 
     /// A random base; `None` when none was met.
-    fn draw(&self, levels: &[u16], coordinates: usize, attempt: u64) -> Option<Vec<(u16, Vec<u8>)>> {
+    fn draw(&self, levels: &[u16], coordinates: usize, moving: bool, attempt: u64) -> Option<Vec<(u16, Vec<u8>)>> {
         let group = self.request.frame.get(..coordinates)?;
         let base = SymmetricHunt {
             runs: self.runs as u32,
             levels: levels.to_vec(),
             group: group.to_vec(),
             fixed: vec![],
+            moving,
             seed: self.request.seed ^ attempt.wrapping_mul(0x9FB2_1C65_1E98_DF25),
             attempts: 8,
             pool: 60,
@@ -210,8 +213,8 @@ impl Setting<'_> {
         let request = self.request;
         let mut random = Random::new(request.seed ^ attempt.wrapping_mul(0xD1B5_4A32_D192_ED03));
         let drawn = match (&request.base, fixed) {
-            (Base::Random { levels, coordinates }, None) => {
-                Some(self.start(self.draw(levels, *coordinates, attempt)?, &mut random)?)
+            (Base::Random { levels, coordinates, moving }, None) => {
+                Some(self.start(self.draw(levels, *coordinates, *moving, attempt)?, &mut random)?)
             }
             _ => None,
         };

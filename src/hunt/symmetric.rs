@@ -27,6 +27,8 @@ pub struct SymmetricHunt {
     pub group: Vec<u16>,
     /// Columns that must be in the array, in the symmetry of the group.
     pub fixed: Vec<OrbitColumn>,
+    /// Whether every generator must move the levels of a factor, where the levels allow it.
+    pub moving: bool,
     /// The seed of the random numbers.
     pub seed: u64,
     /// How many attempts are made at the most.
@@ -214,8 +216,11 @@ impl Setting {
     fn characters(&self, hunt: &SymmetricHunt, s: u16) -> Vec<Vec<u16>> {
         let mut all: Vec<Vec<u16>> = vec![Vec::new()];
         for &n in &hunt.group {
-            let steps: Vec<u16> =
+            let mut steps: Vec<u16> =
                 (0..s).filter(|&x| (u32::from(x) * u32::from(n)).is_multiple_of(u32::from(s))).collect();
+            if hunt.moving && steps.len() > 1 {
+                steps.remove(0);
+            }
             all = all
                 .iter()
                 .flat_map(|c| steps.iter().map(|&x| c.iter().copied().chain([x]).collect()))
@@ -388,6 +393,7 @@ mod tests {
             levels,
             group: group.to_vec(),
             fixed: vec![],
+            moving: false,
             seed: 1,
             attempts: 400,
             pool: 200,
@@ -414,6 +420,7 @@ mod tests {
             levels: levels.to_vec(),
             group: group.to_vec(),
             fixed: vec![],
+            moving: false,
             seed: 1,
             attempts: 4,
             pool: 10,
