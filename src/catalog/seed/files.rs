@@ -57,6 +57,8 @@ embedded! {
     "orbits-0020-2-5x1-2x8"
     "orbits-0024-2-6x1-2x14"
     "orbits-0028-2-7x1-2x12"
+    "orbits-0036-2-3x1-2x27"
+    "orbits-0036-2-3x2-2x20"
     "orbits-0036-2-6x1-3x1-2x18"
     "orbits-0036-2-6x1-3x2-2x13"
     "orbits-0036-2-6x1-3x8-2x10"
