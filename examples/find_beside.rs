@@ -14,7 +14,9 @@ type Fail = Box<dyn std::error::Error>;
 fn main() -> Result<(), Fail> {
     let words: Vec<String> = std::env::args().skip(1).collect();
     let [frame, base, symmetry, twos, threes, seed, attempts, looks, start, steps] = &words[..] else {
-        return Err("write: find_beside FRAME BASE SYMMETRY TWOS THREES SEED ATTEMPTS LOOKS START STEPS".into());
+        return Err(
+            "write: find_beside FRAME BASE SYMMETRY TWOS THREES SEED ATTEMPTS LOOKS START STEPS".into()
+        );
     };
     let frame: Vec<u16> = frame.split('x').map(str::parse).collect::<Result<_, _>>()?;
     let request = BesideHunt {

@@ -12,10 +12,10 @@ use rayon::prelude::*;
 
 use super::clique::Clique;
 use super::frame;
+use super::halves::Halves;
 use super::random::Random;
 use super::splits::{Move, Orbit, Split, orbit};
 use super::symmetric::{SymmetricHunt, hunt};
-use super::halves::Halves;
 use crate::construct::{OrbitColumn, orbit_array};
 
 /// The columns that come first.
@@ -115,9 +115,7 @@ pub fn hunt_beside(request: &BesideHunt) -> Option<Beside> {
     let all = u128::MAX >> (128 - runs);
     let setting = Setting { request, runs, all, moves: frame::moves(&elements), elements };
     let fixed = match &request.base {
-        Base::Forms(forms) => {
-            Some(setting.start(setting.forms(forms)?, &mut Random::new(request.seed))?)
-        }
+        Base::Forms(forms) => Some(setting.start(setting.forms(forms)?, &mut Random::new(request.seed))?),
         Base::Random { .. } => None,
     };
     let mut best: Option<Beside> = None;
@@ -153,9 +151,8 @@ impl Setting<'_> {
 
     fn expand(&self, group: &[u16], columns: &[OrbitColumn]) -> Option<Vec<(u16, Vec<u8>)>> {
         let array = orbit_array(group, columns).ok()?;
-        let symbols = |j: usize| -> Option<Vec<u8>> {
-            array.column(j).iter().map(|&x| u8::try_from(x).ok()).collect()
-        };
+        let symbols =
+            |j: usize| -> Option<Vec<u8>> { array.column(j).iter().map(|&x| u8::try_from(x).ok()).collect() };
         let mut base: Vec<(u16, Vec<u8>)> =
             (0..columns.len()).map(|j| Some((columns[j].levels, symbols(j)?))).collect::<Option<_>>()?;
         // Small blocks first.
@@ -167,7 +164,13 @@ impl Setting<'_> {
     }
 
     /// A random base; `None` when none was met.
-    fn draw(&self, levels: &[u16], coordinates: usize, moving: bool, attempt: u64) -> Option<Vec<(u16, Vec<u8>)>> {
+    fn draw(
+        &self,
+        levels: &[u16],
+        coordinates: usize,
+        moving: bool,
+        attempt: u64,
+    ) -> Option<Vec<(u16, Vec<u8>)>> {
         let group = self.request.frame.get(..coordinates)?;
         let base = SymmetricHunt {
             runs: self.runs as u32,
@@ -198,10 +201,10 @@ impl Setting<'_> {
             let halves = Halves::new(given, levels, random)?;
             let mut seen: HashSet<Split> = HashSet::new();
             halves.visit(self.request.looks, random, |split| {
-                if let Some(orbit) = orbit(split, &self.moves, self.runs as u32, self.all) {
-                    if orbit.iter().min().is_some_and(|&least| seen.insert(least)) {
-                        pool.push(orbit);
-                    }
+                if let Some(orbit) = orbit(split, &self.moves, self.runs as u32, self.all)
+                    && orbit.iter().min().is_some_and(|&least| seen.insert(least))
+                {
+                    pool.push(orbit);
                 }
                 pool.len() >= POOL
             });
@@ -229,9 +232,9 @@ impl Setting<'_> {
                 let kind = usize::from(split.levels) - 2;
                 wanted[kind] = wanted[kind].saturating_sub(1);
             }
-            let more = chosen.iter().map(|c| {
-                (u16::from(c.levels), c.symbols(self.runs).iter().map(|&x| x as u8).collect())
-            });
+            let more = chosen
+                .iter()
+                .map(|c| (u16::from(c.levels), c.symbols(self.runs).iter().map(|&x| x as u8).collect()));
             let given: Vec<(u16, Vec<u8>)> = base.iter().cloned().chain(more).collect();
             let pool = self.pool(&given, &mut random)?;
             let rest = clique(&pool, wanted).search(request.steps, &mut random);
@@ -259,5 +262,96 @@ impl Setting<'_> {
             }
         }
         Beside { columns, beside, complete: left == [0, 0], attempt }
+    }
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+    use crate::verify::{Demand, Verdict, certify};
+
+    fn turn(n: u16, by: u16) -> Vec<u16> {
+        (0..n).map(|x| (x + by) % n).collect()
+    }
+
+    fn two_of_six(wanted: usize) -> BesideHunt {
+        BesideHunt {
+            frame: vec![6, 6],
+            base: Base::Forms(vec![(6, vec![1, 0]), (6, vec![0, 1])]),
+            symmetry: vec![vec![turn(6, 2), turn(6, 2)]],
+            wanted: [wanted, 0],
+            seed: 1,
+            attempts: 20,
+            looks: 400_000,
+            start: 0,
+            steps: 400,
+        }
+    }
+
+    fn judged(found: &Beside) -> bool {
+        let array = orbit_array(&[], &found.columns).unwrap();
+        certify(&array, &Demand::strength(2)).unwrap().verdict == Verdict::Orthogonal
+    }
+
+    #[test]
+    fn the_group_permutes_the_columns() {
+        let found = hunt_beside(&two_of_six(14)).unwrap();
+        assert!(found.complete && found.columns.len() == 16 && judged(&found));
+    }
+
+    #[test]
+    fn a_random_base_whose_levels_move() {
+        let request = BesideHunt {
+            frame: vec![3, 12],
+            base: Base::Random { levels: vec![3, 3, 3, 3, 6, 6], coordinates: 1, moving: true },
+            symmetry: vec![],
+            wanted: [9, 0],
+            ..two_of_six(0)
+        };
+        let found = hunt_beside(&request).unwrap();
+        assert!(found.complete && judged(&found));
+    }
+
+    #[test]
+    fn the_same_for_any_number_of_threads() {
+        // 19 are more than the degrees of freedom leave: every attempt is made.
+        let request = BesideHunt {
+            frame: vec![4, 5],
+            base: Base::Forms(vec![(5, vec![0, 1])]),
+            symmetry: vec![],
+            wanted: [19, 0],
+            attempts: 6,
+            looks: 3000,
+            start: 3,
+            steps: 100,
+            ..two_of_six(0)
+        };
+        let on = |threads| {
+            let pool = rayon::ThreadPoolBuilder::new().num_threads(threads).build().unwrap();
+            pool.install(|| hunt_beside(&request)).unwrap()
+        };
+        let found = on(1);
+        assert!(!found.complete && found.beside >= 6 && judged(&found));
+        assert_eq!(on(3), found);
+    }
+
+    #[test]
+    fn requests_that_make_no_sense() {
+        let good = two_of_six(1);
+        for bad in [
+            BesideHunt { frame: vec![6, 7], ..good.clone() },
+            BesideHunt { frame: vec![30, 30], symmetry: vec![], ..good.clone() },
+            BesideHunt { symmetry: vec![vec![turn(6, 2), vec![1, 0, 2, 4, 3, 4]]], ..good.clone() },
+            BesideHunt { base: Base::Forms(vec![]), ..good.clone() },
+            BesideHunt { base: Base::Forms(vec![(5, vec![1, 0])]), ..good.clone() },
+            BesideHunt { base: Base::Forms(vec![(6, vec![1, 3])]), ..good.clone() },
+            BesideHunt { frame: vec![3, 3], base: Base::Forms(vec![(3, vec![1, 0])]), ..good.clone() },
+            BesideHunt {
+                base: Base::Random { levels: vec![6, 6], coordinates: 5, moving: false },
+                ..good.clone()
+            },
+        ] {
+            assert!(hunt_beside(&bad).is_none(), "{bad:?}");
+        }
     }
 }

@@ -149,3 +149,27 @@ impl Clique<'_> {
         }
     }
 }
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+    use crate::hunt::splits::Split;
+
+    /// The 35 even splits of 8 runs: the largest orthogonal sets have seven.
+    #[test]
+    fn the_columns_of_a_hadamard_matrix_are_found() {
+        let split = |mask: u128| vec![Split { masks: [mask, 0], levels: 2 }];
+        let pool: Vec<Orbit> =
+            (0..256u128).filter(|m| m & 1 == 1 && m.count_ones() == 4).map(split).collect();
+        assert_eq!(pool.len(), 35);
+        let clique = |wanted| Clique { runs: 8, pool: &pool, wanted: [wanted, 0] };
+        let found = clique(8).search(500, &mut Random::new(1));
+        assert_eq!(found.len(), 7);
+        for (i, &v) in found.iter().enumerate() {
+            assert!(found[..i].iter().all(|&w| joined(&pool[v], &pool[w], 8)));
+        }
+        assert_eq!(clique(8).greedy(3, &mut Random::new(1)).len(), 3);
+        let none = Clique { runs: 8, pool: &[], wanted: [1, 0] };
+        assert!(none.search(10, &mut Random::new(1)).is_empty());
+    }
+}

@@ -64,7 +64,11 @@ impl Halves {
         while i < self.left.len() && j < self.right.len() {
             let (a, b) = (self.left[i].key, self.right[j].key);
             if a != b {
-                if a < b { i += 1 } else { j += 1 }
+                if a < b {
+                    i += 1;
+                } else {
+                    j += 1;
+                }
                 continue;
             }
             let end = |list: &[Half], from: usize| {
