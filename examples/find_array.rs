@@ -19,6 +19,7 @@ fn main() -> Result<(), Box<dyn std::error::Error>> {
         levels: mix.parse::<Mix>()?.levels().to_vec(),
         group,
         fixed: vec![],
+        moving: false,
         seed: seed.parse()?,
         attempts: attempts.parse()?,
         pool: pool.parse()?,

@@ -2,6 +2,7 @@
 //!
 //! | file | what it looks for |
 //! | --- | --- |
+//! | `beside` | columns of two and three levels beside given ones, under a group that permutes them |
 //! | `blocks` | two-level columns beside one p-level column in 4p runs |
 //! | `circulants` | four rows for the array of Goethals and Seidel |
 //! | `flats` | slices, unions of flats, that are an array of strength 3 together |
@@ -14,17 +15,24 @@
 //! | `t_matrices` | T-matrices, to be multiplied with Williamson's |
 //! | `write` | what was found as the text of a seed |
 //!
+//! `frame` (runs as points of a box), `splits`, `halves` and `clique` serve `beside`.
+//!
 //! Every search takes a seed and answers the same for the same request on every machine. What was
 //! found lies in `catalog/`; the line `source` there names the command, an example of this crate.
 
+pub mod beside;
 pub mod blocks;
 mod circulants;
+mod clique;
 pub mod flats;
+mod frame;
+mod halves;
 pub mod latin;
 mod quadratics;
 mod random;
 mod schemes;
 pub mod slices;
+mod splits;
 pub mod subspaces;
 pub mod symmetric;
 mod t_matrices;

@@ -6,10 +6,13 @@
 //! Among the solutions of one kind a clique is grown greedily, at each step the one of a few that
 //! leaves most of the others.
 
+mod solver;
+
 use std::time::Instant;
 
 use rayon::prelude::*;
 
+use self::solver::Solver;
 use super::random::Random;
 use crate::construct::OrbitColumn;
 
@@ -27,6 +30,8 @@ pub struct SymmetricHunt {
     pub group: Vec<u16>,
     /// Columns that must be in the array, in the symmetry of the group.
     pub fixed: Vec<OrbitColumn>,
+    /// Whether every generator must move the levels of a factor, where the levels allow it.
+    pub moving: bool,
     /// The seed of the random numbers.
     pub seed: u64,
     /// How many attempts are made at the most.
@@ -214,8 +219,11 @@ impl Setting {
     fn characters(&self, hunt: &SymmetricHunt, s: u16) -> Vec<Vec<u16>> {
         let mut all: Vec<Vec<u16>> = vec![Vec::new()];
         for &n in &hunt.group {
-            let steps: Vec<u16> =
+            let mut steps: Vec<u16> =
                 (0..s).filter(|&x| (u32::from(x) * u32::from(n)).is_multiple_of(u32::from(s))).collect();
+            if hunt.moving && steps.len() > 1 {
+                steps.remove(0);
+            }
             all = all
                 .iter()
                 .flat_map(|c| steps.iter().map(|&x| c.iter().copied().chain([x]).collect()))
@@ -261,120 +269,6 @@ fn orthogonal(a: &Column, b: &Column) -> bool {
         && a.masks.iter().all(|x| b.masks.iter().all(|y| (x & y).count_ones() == runs / product))
 }
 
-/// Backtracking over the orbits for one column orthogonal to all chosen ones.
-struct Solver<'a> {
-    setting: &'a Setting,
-    chosen: &'a [Column],
-    s: u16,
-    /// For each chosen column how often each pair of levels may occur; `None` if it cannot be even.
-    limits: Option<Vec<u16>>,
-    /// Where the counters of each chosen column begin; the last ones count the new column alone.
-    offsets: Vec<usize>,
-    counters: Vec<u16>,
-}
-
-impl<'a> Solver<'a> {
-    /// A solution that needs more steps than this is given up.
-    const STEPS: usize = 4000;
-
-    fn new(setting: &'a Setting, chosen: &'a [Column], s: u16) -> Self {
-        let runs = setting.runs;
-        let (mut offsets, mut size) = (Vec::new(), 0);
-        let mut limits = Some(Vec::new());
-        for c in chosen {
-            offsets.push(size);
-            let pairs = usize::from(c.stored.levels) * usize::from(s);
-            size += pairs;
-            match &mut limits {
-                Some(l) if runs.is_multiple_of(pairs) => l.push((runs / pairs) as u16),
-                other => *other = None,
-            }
-        }
-        offsets.push(size);
-        size += usize::from(s);
-        if let Some(l) = &mut limits {
-            l.push((runs / usize::from(s)) as u16);
-        }
-        Self { setting, chosen, s, limits, offsets, counters: vec![0; size] }
-    }
-
-    fn solve(&mut self, shifts: &[u16], random: &mut Random) -> Option<Vec<u16>> {
-        let limits = self.limits.clone()?;
-        self.counters.fill(0);
-        let (orbits, s) = (self.setting.orbits, usize::from(self.s));
-        let shift: Vec<usize> =
-            (0..self.setting.order).map(|g| self.setting.shift(shifts, g, self.s)).collect();
-        let mut order: Vec<usize> = (0..orbits).collect();
-        random.shuffle(&mut order);
-        // The untried symbols of each orbit on the way, and the one in place.
-        let mut open: Vec<Vec<u16>> = vec![vec![0]];
-        let mut base = vec![0u16; orbits];
-        let mut steps = 0;
-        let mut depth = 0;
-        loop {
-            let o = order[depth];
-            match open[depth].pop() {
-                None => {
-                    open.pop();
-                    if depth == 0 {
-                        return None;
-                    }
-                    depth -= 1;
-                    self.count(order[depth], base[order[depth]], &shift, false);
-                }
-                Some(b) => {
-                    steps += 1;
-                    if steps > Self::STEPS {
-                        return None;
-                    }
-                    base[o] = b;
-                    self.count(o, b, &shift, true);
-                    if !self.within(o, b, &shift, &limits) {
-                        self.count(o, b, &shift, false);
-                        continue;
-                    }
-                    depth += 1;
-                    if depth == orbits {
-                        return Some(base);
-                    }
-                    let mut symbols: Vec<u16> = (0..s as u16).collect();
-                    random.shuffle(&mut symbols);
-                    open.push(symbols);
-                }
-            }
-        }
-    }
-
-    /// Puts orbit `o` with symbol `b` into the counters or takes it out.
-    fn count(&mut self, o: usize, b: u16, shift: &[usize], into: bool) {
-        let s = usize::from(self.s);
-        for (g, &x) in shift.iter().enumerate() {
-            let symbol = (usize::from(b) + x) % s;
-            let run = o * self.setting.order + g;
-            for (c, &offset) in self.chosen.iter().zip(&self.offsets) {
-                let at = offset + usize::from(c.symbols[run]) * s + symbol;
-                self.counters[at] = if into { self.counters[at] + 1 } else { self.counters[at] - 1 };
-            }
-            let at = self.offsets[self.chosen.len()] + symbol;
-            self.counters[at] = if into { self.counters[at] + 1 } else { self.counters[at] - 1 };
-        }
-    }
-
-    /// Whether the counters that orbit `o` touches are within their limits.
-    fn within(&self, o: usize, b: u16, shift: &[usize], limits: &[u16]) -> bool {
-        let s = usize::from(self.s);
-        shift.iter().enumerate().all(|(g, &x)| {
-            let symbol = (usize::from(b) + x) % s;
-            let run = o * self.setting.order + g;
-            let alone = self.chosen.len();
-            self.counters[self.offsets[alone] + symbol] <= limits[alone]
-                && self.chosen.iter().zip(&self.offsets).zip(limits).all(|((c, &offset), &limit)| {
-                    self.counters[offset + usize::from(c.symbols[run]) * s + symbol] <= limit
-                })
-        })
-    }
-}
-
 #[cfg(test)]
 mod tests {
     use super::*;
@@ -388,6 +282,7 @@ mod tests {
             levels,
             group: group.to_vec(),
             fixed: vec![],
+            moving: false,
             seed: 1,
             attempts: 400,
             pool: 200,
@@ -414,6 +309,7 @@ mod tests {
             levels: levels.to_vec(),
             group: group.to_vec(),
             fixed: vec![],
+            moving: false,
             seed: 1,
             attempts: 4,
             pool: 10,

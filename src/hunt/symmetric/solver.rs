@@ -1,0 +1,118 @@
+//! The next column, solved for.
+
+use super::{Column, Setting};
+use crate::hunt::random::Random;
+
+/// Backtracking over the orbits for one column orthogonal to all chosen ones.
+pub(super) struct Solver<'a> {
+    setting: &'a Setting,
+    chosen: &'a [Column],
+    s: u16,
+    /// For each chosen column how often each pair of levels may occur; `None` if it cannot be even.
+    limits: Option<Vec<u16>>,
+    /// Where the counters of each chosen column begin; the last ones count the new column alone.
+    offsets: Vec<usize>,
+    counters: Vec<u16>,
+}
+
+impl<'a> Solver<'a> {
+    /// A solution that needs more steps than this is given up.
+    const STEPS: usize = 4000;
+
+    pub(super) fn new(setting: &'a Setting, chosen: &'a [Column], s: u16) -> Self {
+        let runs = setting.runs;
+        let (mut offsets, mut size) = (Vec::new(), 0);
+        let mut limits = Some(Vec::new());
+        for c in chosen {
+            offsets.push(size);
+            let pairs = usize::from(c.stored.levels) * usize::from(s);
+            size += pairs;
+            match &mut limits {
+                Some(l) if runs.is_multiple_of(pairs) => l.push((runs / pairs) as u16),
+                other => *other = None,
+            }
+        }
+        offsets.push(size);
+        size += usize::from(s);
+        if let Some(l) = &mut limits {
+            l.push((runs / usize::from(s)) as u16);
+        }
+        Self { setting, chosen, s, limits, offsets, counters: vec![0; size] }
+    }
+
+    pub(super) fn solve(&mut self, shifts: &[u16], random: &mut Random) -> Option<Vec<u16>> {
+        let limits = self.limits.clone()?;
+        self.counters.fill(0);
+        let (orbits, s) = (self.setting.orbits, usize::from(self.s));
+        let shift: Vec<usize> =
+            (0..self.setting.order).map(|g| self.setting.shift(shifts, g, self.s)).collect();
+        let mut order: Vec<usize> = (0..orbits).collect();
+        random.shuffle(&mut order);
+        // The untried symbols of each orbit on the way, and the one in place.
+        let mut open: Vec<Vec<u16>> = vec![vec![0]];
+        let mut base = vec![0u16; orbits];
+        let mut steps = 0;
+        let mut depth = 0;
+        loop {
+            let o = order[depth];
+            match open[depth].pop() {
+                None => {
+                    open.pop();
+                    if depth == 0 {
+                        return None;
+                    }
+                    depth -= 1;
+                    self.count(order[depth], base[order[depth]], &shift, false);
+                }
+                Some(b) => {
+                    steps += 1;
+                    if steps > Self::STEPS {
+                        return None;
+                    }
+                    base[o] = b;
+                    self.count(o, b, &shift, true);
+                    if !self.within(o, b, &shift, &limits) {
+                        self.count(o, b, &shift, false);
+                        continue;
+                    }
+                    depth += 1;
+                    if depth == orbits {
+                        return Some(base);
+                    }
+                    let mut symbols: Vec<u16> = (0..s as u16).collect();
+                    random.shuffle(&mut symbols);
+                    open.push(symbols);
+                }
+            }
+        }
+    }
+
+    /// Puts orbit `o` with symbol `b` into the counters or takes it out.
+    fn count(&mut self, o: usize, b: u16, shift: &[usize], into: bool) {
+        let s = usize::from(self.s);
+        for (g, &x) in shift.iter().enumerate() {
+            let symbol = (usize::from(b) + x) % s;
+            let run = o * self.setting.order + g;
+            for (c, &offset) in self.chosen.iter().zip(&self.offsets) {
+                let at = offset + usize::from(c.symbols[run]) * s + symbol;
+                self.counters[at] = if into { self.counters[at] + 1 } else { self.counters[at] - 1 };
+            }
+            let at = self.offsets[self.chosen.len()] + symbol;
+            self.counters[at] = if into { self.counters[at] + 1 } else { self.counters[at] - 1 };
+        }
+    }
+
+    /// Whether the counters that orbit `o` touches are within their limits.
+    fn within(&self, o: usize, b: u16, shift: &[usize], limits: &[u16]) -> bool {
+        let s = usize::from(self.s);
+        shift.iter().enumerate().all(|(g, &x)| {
+            let symbol = (usize::from(b) + x) % s;
+            let run = o * self.setting.order + g;
+            let alone = self.chosen.len();
+            self.counters[self.offsets[alone] + symbol] <= limits[alone]
+                && self.chosen.iter().zip(&self.offsets).zip(limits).all(|((c, &offset), &limit)| {
+                    self.counters[offset + usize::from(c.symbols[run]) * s + symbol] <= limit
+                })
+        })
+    }
+}
