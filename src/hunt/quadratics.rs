@@ -103,7 +103,7 @@ impl Quadratics {
 
 /// s, P, Q, R of a block number.
 fn parts(code: u8) -> (i64, [u8; 3]) {
-    let (s, p, q) = (if code % 2 == 0 { 1i64 } else { -1 }, code / 6, code / 2 % 3);
+    let (s, p, q) = (if code.is_multiple_of(2) { 1i64 } else { -1 }, code / 6, code / 2 % 3);
     (s, [p, q, (s - i64::from(p) - i64::from(q)).rem_euclid(3) as u8])
 }
 
