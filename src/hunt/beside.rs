@@ -344,7 +344,12 @@ mod tests {
             BesideHunt { symmetry: vec![vec![turn(6, 2), vec![1, 0, 2, 4, 3, 4]]], ..good.clone() },
             BesideHunt { base: Base::Forms(vec![]), ..good.clone() },
             BesideHunt { base: Base::Forms(vec![(5, vec![1, 0])]), ..good.clone() },
-            BesideHunt { base: Base::Forms(vec![(6, vec![1, 3])]), ..good.clone() },
+            // x + y is not kept when x alone moves unevenly.
+            BesideHunt {
+                base: Base::Forms(vec![(6, vec![1, 1])]),
+                symmetry: vec![vec![vec![1, 0, 2, 3, 4, 5], turn(6, 0)]],
+                ..good.clone()
+            },
             BesideHunt { frame: vec![3, 3], base: Base::Forms(vec![(3, vec![1, 0])]), ..good.clone() },
             BesideHunt {
                 base: Base::Random { levels: vec![6, 6], coordinates: 5, moving: false },

@@ -71,6 +71,7 @@ embedded! {
     "orbits-0036-2-6x3-2x8"
     "orbits-0036-2-6x3-3x1-2x4"
     "orbits-0036-2-6x3-3x7"
+    "orbits-0036-2-9x1-2x13"
     "orbits-0044-2-11x1-2x20"
     "orbits-0052-2-13x1-2x18"
     "orbits-0060-2-10x1-2x22"
