@@ -21,9 +21,9 @@
 //! rest take the one with the most columns. The data for the last are arguments; those known to
 //! the project lie in the folder `catalog/`.
 //!
-//! **Columns not reached** (best known of the literature, from memory, in brackets; each tried with
-//! `hunt::SchemeHunt` under 3 to 20 symmetries, at most 30 s each): s = 3: r = 30 has 15 [30];
-//! s = 4: r = 24 has 12 [20]; index 1: r = s = 21 has 3 [6], 24 has 7 [8]. Above what we had read of:
+//! **Columns not reached** (after the stroke the best known of the literature, from memory; each tried
+//! with `hunt::SchemeHunt` under 3 to 20 symmetries, at most 30 s each): s = 3: r = 30 has 15/30;
+//! s = 4: r = 24 has 12/20; index 1: r = s = 21 has 3/6, 24 has 7/8. Above what we had read of:
 //! D(21, 21, 3), D(28, 14, 4), D(35, 9, 5). Seberry's D(q(q − 1), q(q − 1), q) is not here as a
 //! construction; 6·3, 12·4 and 20·5 come otherwise, 56·8 and 72·9 do not.
 //!
