@@ -8,6 +8,7 @@ use crate::construct::hadamard::goethals_seidel;
 use crate::construct::scheme::from_starter;
 use crate::construct::{ConstructError, OrbitColumn, orbit_array};
 use crate::mix::counts_of;
+use crate::verify::{Demand, Verdict, certify};
 
 /// The text of the seed `circulants-LENGTH` in the format of `catalog/FORMAT.md`.
 ///
@@ -53,7 +54,8 @@ pub fn scheme_seed(group: &[u16], columns: &[Vec<u16>], source: &str) -> Result<
 /// with many levels come first.
 ///
 /// # Errors
-/// Those of [`orbit_array`]: the columns are checked, but not the strength.
+/// Those of [`orbit_array`], and a broken condition when the judges do not find the strength (for
+/// fewer factors than that, the strength of a full factorial): nothing is written down unjudged.
 pub fn orbits_seed(
     group: &[u16],
     columns: &[OrbitColumn],
@@ -63,6 +65,10 @@ pub fn orbits_seed(
     let mut columns = columns.to_vec();
     columns.sort_by_key(|c| std::cmp::Reverse(c.levels));
     let array = orbit_array(group, &columns)?;
+    let demand = Demand::strength((strength as usize).min(array.factors()));
+    if !certify(&array, &demand).is_ok_and(|j| j.verdict == Verdict::Orthogonal) {
+        return Err(ConstructError::condition("seed of an orbit array", format!("strength {strength}")));
+    }
     let expanded: String = array.rows().map(|run| numbers(&run) + "\n").collect();
     let body: String =
         columns.iter().map(|c| numbers(&[&c.shifts[..], &c.base[..]].concat()) + "\n").collect();
@@ -101,6 +107,14 @@ fn digest(text: &str) -> String {
 mod tests {
     use super::*;
     use crate::catalog::seed::{Seed, SeedKind, find};
+
+    #[test]
+    fn an_array_without_the_strength_is_not_written_down() {
+        let column = |base: [u16; 4]| OrbitColumn { levels: 2, shifts: vec![], base: base.to_vec() };
+        let (a, b) = (column([0, 0, 1, 1]), column([0, 1, 0, 1]));
+        assert!(orbits_seed(&[], &[a.clone(), b], 2, "a test").is_ok());
+        assert!(orbits_seed(&[], &[a.clone(), a], 2, "a test").is_err());
+    }
 
     /// Written again, a seed of the catalogue keeps its digest and its data.
     #[test]

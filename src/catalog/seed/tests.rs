@@ -352,8 +352,11 @@ proptest! {
             let gone = at.index(lines.len());
             lines.iter().enumerate().filter(|&(i, _)| i != gone).map(|(_, l)| *l).collect()
         } else {
-            let place = at.index(text.len());
-            format!("{}{c}{}", &text[..place], &text[place + 1..])
+            // By characters: a source may name people with other letters than ASCII has.
+            let mut pieces: Vec<String> = text.chars().map(String::from).collect();
+            let place = at.index(pieces.len());
+            pieces[place] = c;
+            pieces.concat()
         };
         match damaged.parse::<Seed>() {
             Ok(seed) => {
