@@ -5,6 +5,7 @@
 //! | `beside` | columns of two and three levels beside given ones, under a group that permutes them |
 //! | `blocks` | two-level columns beside one p-level column in 4p runs |
 //! | `circulants` | four rows for the array of Goethals and Seidel |
+//! | `effort` | the budget of a search, in steps |
 //! | `flats` | slices, unions of flats, that are an array of strength 3 together |
 //! | `latin` | quasi-difference matrices and V vectors |
 //! | `quadratics` | difference schemes over Z3 in blocks of order 3 |
@@ -24,6 +25,7 @@ pub mod beside;
 pub mod blocks;
 mod circulants;
 mod clique;
+mod effort;
 pub mod flats;
 mod frame;
 mod halves;
@@ -39,6 +41,7 @@ mod t_matrices;
 mod write;
 
 pub use circulants::FourCirculants;
+pub use effort::Effort;
 pub use quadratics::Quadratics;
 pub use random::Random;
 pub use schemes::{SchemeHunt, Symmetry};
