@@ -175,6 +175,7 @@ impl Setting<'_> {
         let base = SymmetricHunt {
             runs: self.runs as u32,
             levels: levels.to_vec(),
+            strength: 2,
             group: group.to_vec(),
             fixed: vec![],
             moving,
