@@ -21,9 +21,11 @@ fn main() -> Result<(), Box<dyn std::error::Error>> {
         group,
         fixed: vec![],
         moving: false,
+        elementary: false,
         seed: seed.parse()?,
         attempts: attempts.parse()?,
         pool: pool.parse()?,
+        exchanges: 0,
     };
     let start = std::time::Instant::now();
     let found = hunt(&request, None).ok_or("the runs are no multiple of the group or of a level")?;

@@ -217,9 +217,11 @@ impl<'a> Setting<'a> {
             group: group.to_vec(),
             fixed: vec![],
             moving,
+            elementary: false,
             seed: self.request.seed ^ attempt.wrapping_mul(0x9FB2_1C65_1E98_DF25),
             attempts: 8,
             pool: 60,
+            exchanges: 0,
         };
         let found = attempts(&base, effort).filter(|f| f.complete)?;
         self.expand(group, &found.columns)

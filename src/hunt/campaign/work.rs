@@ -28,7 +28,7 @@ const DOUBLINGS: u64 = 9;
 #[derive(Clone, Debug)]
 pub(super) enum Strategy {
     /// Solve for column after column under a group.
-    Solve { group: Vec<u16>, moving: bool },
+    Solve { group: Vec<u16>, moving: bool, elementary: bool },
     /// Columns of two and three levels beside a base, the group permuting columns.
     Beside { request: BesideHunt, symmetry: String },
     /// Vectors of block types beside one p-level column.
@@ -71,7 +71,7 @@ impl Strategy {
 
     fn run(&self, request: &HuntRequest, seed: u64, round: u64, effort: &mut Effort<'_>) -> Work {
         let (group, columns) = match self {
-            Self::Solve { group, moving } => {
+            Self::Solve { group, moving, elementary } => {
                 let hunt = SymmetricHunt {
                     runs: request.runs,
                     levels: request.mix.levels().to_vec(),
@@ -79,11 +79,15 @@ impl Strategy {
                     group: group.clone(),
                     fixed: Vec::new(),
                     moving: *moving,
+                    elementary: *elementary,
                     seed,
                     attempts: u64::MAX,
-                    pool: [40, 100, 200, 300, 500][round.min(4) as usize],
+                    pool: [40, 100, 200, 300, 500, 800, 1200, 1600][round.min(7) as usize],
+                    // Every second round the cliques are worked on.
+                    exchanges: if round % 2 == 1 { 400 } else { 0 },
                 };
-                (group.clone(), attempts(&hunt, effort).map(|f| f.columns))
+                let stored = if *elementary { Vec::new() } else { group.clone() };
+                (stored, attempts(&hunt, effort).map(|f| f.columns))
             }
             Self::Beside { request: beside, .. } => {
                 // Some of the columns first, then all others anew: every second round.
@@ -162,17 +166,21 @@ fn columns_of(array: &crate::array::Array) -> Vec<OrbitColumn> {
 /// The strategies of a request, cheapest first.
 pub(super) fn strategies(request: &HuntRequest) -> Vec<Strategy> {
     let mut list = Vec::new();
-    match &request.symmetry {
-        Symmetry::Group(group) => {
-            list.push(Strategy::Solve { group: group.clone(), moving: false });
-            if !group.is_empty() {
-                list.push(Strategy::Solve { group: group.clone(), moving: true });
-            }
+    let groups = match &request.symmetry {
+        Symmetry::Group(group) => vec![group.clone()],
+        Symmetry::Auto => groups(request.runs),
+    };
+    let chosen = request.symmetry != Symmetry::Auto;
+    for group in groups {
+        let solve = |moving, elementary| Strategy::Solve { group: group.clone(), moving, elementary };
+        list.push(solve(false, false));
+        if chosen && !group.is_empty() {
+            list.push(solve(true, false));
         }
-        Symmetry::Auto => {
-            list.extend(
-                groups(request.runs).into_iter().map(|group| Strategy::Solve { group, moving: false }),
-            );
+        // Vectors of levels differ from numbers where a group acts on prime powers.
+        let powers = |s: u16| group.iter().any(|&n| s > n && is_power(s, n));
+        if group.len() > 1 && request.mix.levels().iter().any(|&s| powers(s)) {
+            list.push(solve(true, true));
         }
     }
     let free = |s: &Strategy| match &request.symmetry {
@@ -186,6 +194,14 @@ pub(super) fn strategies(request: &HuntRequest) -> Vec<Strategy> {
         list.extend(slice_strategy(request).into_iter().filter(free));
     }
     list
+}
+
+/// Whether s = n^e.
+fn is_power(mut s: u16, n: u16) -> bool {
+    while n > 1 && s > 1 && s.is_multiple_of(n) {
+        s /= n;
+    }
+    s == 1
 }
 
 /// The groups that are tried: those that act freely on the runs, the trivial one first.
