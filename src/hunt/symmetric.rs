@@ -36,8 +36,8 @@ pub struct SymmetricHunt {
     pub group: Vec<u16>,
     /// Columns that must be in the array, in the symmetry of the group.
     pub fixed: Vec<OrbitColumn>,
-    /// Whether every generator must move the levels of a factor, where the levels allow it.
-    pub moving: bool,
+    /// How the group moves the levels.
+    pub motion: Motion,
     /// Whether p^e levels are the vectors over Z_p, written in base p, and not the numbers modulo
     /// p^e: another action of the group on them. The columns found then name the symbol of every
     /// run, as for the trivial group.
@@ -51,6 +51,18 @@ pub struct SymmetricHunt {
     /// How many exchanges improve a clique of two- or three-level columns at strength 2; 0 for
     /// greedy cliques.
     pub exchanges: u64,
+}
+
+/// How the group moves the levels of the factors.
+#[derive(Clone, Copy, Debug, PartialEq, Eq)]
+pub enum Motion {
+    /// In any way.
+    Any,
+    /// Every generator moves them, where their number allows it.
+    Every,
+    /// For each number of levels and each attempt chosen at random: in any way, not at all, or with
+    /// as few elements as possible that do not move them.
+    Varied,
 }
 
 /// What a hunt came to.
@@ -249,7 +261,7 @@ impl Setting {
     ) -> bool {
         let mut missing = count;
         let mut pool: Vec<Column> = Vec::new();
-        let characters = self.characters(hunt, s);
+        let characters = self.characters(hunt, s, random);
         while missing > 0 {
             if pool.len() < missing {
                 self.draw(hunt.pool, &partial.tests, s, &characters, &mut pool, random, effort);
@@ -338,18 +350,29 @@ impl Setting {
     }
 
     /// The homomorphisms from the group to the translations of `s` levels.
-    fn characters(&self, hunt: &SymmetricHunt, s: u16) -> Vec<Vec<u16>> {
+    fn characters(&self, hunt: &SymmetricHunt, s: u16, random: &mut Random) -> Vec<Vec<u16>> {
         let mut all: Vec<Vec<u16>> = vec![Vec::new()];
         for &n in &hunt.group {
             let times = |x: u16| (0..n).fold(0, |sum, _| self.add(s, sum, x));
             let mut steps: Vec<u16> = (0..s).filter(|&x| times(x) == 0).collect();
-            if hunt.moving && steps.len() > 1 {
+            if hunt.motion == Motion::Every && steps.len() > 1 {
                 steps.remove(0);
             }
             all = all
                 .iter()
                 .flat_map(|c| steps.iter().map(|&x| c.iter().copied().chain([x]).collect()))
                 .collect();
+        }
+        if hunt.motion == Motion::Varied {
+            let still = |c: &Vec<u16>| self.shifts(c, s).iter().filter(|&&x| x == 0).count();
+            match random.below(3) {
+                0 => {}
+                1 => all.truncate(1),
+                _ => {
+                    let least = all.iter().map(still).min().unwrap_or(0);
+                    all.retain(|c| still(c) == least);
+                }
+            }
         }
         all
     }
@@ -439,7 +462,7 @@ mod tests {
             strength: 2,
             group: group.to_vec(),
             fixed: vec![],
-            moving: false,
+            motion: Motion::Any,
             elementary: false,
             seed: 1,
             attempts: 400,
@@ -469,7 +492,7 @@ mod tests {
             strength: 2,
             group: group.to_vec(),
             fixed: vec![],
-            moving: false,
+            motion: Motion::Any,
             elementary: false,
             seed: 1,
             attempts: 4,

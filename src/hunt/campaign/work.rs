@@ -12,7 +12,7 @@ use crate::hunt::blocks::{BlockSearch, blocks};
 use crate::hunt::effort::Effort;
 use crate::hunt::random::Random;
 use crate::hunt::slices;
-use crate::hunt::symmetric::{SymmetricHunt, attempts};
+use crate::hunt::symmetric::{Motion, SymmetricHunt, attempts};
 use crate::mix::{Mix, counts_of};
 
 /// Raised whenever a task with the same number does something else, so that no state of an older
@@ -28,7 +28,7 @@ const DOUBLINGS: u64 = 9;
 #[derive(Clone, Debug)]
 pub(super) enum Strategy {
     /// Solve for column after column under a group.
-    Solve { group: Vec<u16>, moving: bool, elementary: bool },
+    Solve { group: Vec<u16>, motion: Motion, elementary: bool },
     /// Columns of two and three levels beside a base, the group permuting columns.
     Beside { request: BesideHunt, symmetry: String },
     /// Vectors of block types beside one p-level column.
@@ -71,14 +71,14 @@ impl Strategy {
 
     fn run(&self, request: &HuntRequest, seed: u64, round: u64, effort: &mut Effort<'_>) -> Work {
         let (group, columns) = match self {
-            Self::Solve { group, moving, elementary } => {
+            Self::Solve { group, motion, elementary } => {
                 let hunt = SymmetricHunt {
                     runs: request.runs,
                     levels: request.mix.levels().to_vec(),
                     strength: request.strength,
                     group: group.clone(),
                     fixed: Vec::new(),
-                    moving: *moving,
+                    motion: *motion,
                     elementary: *elementary,
                     seed,
                     attempts: u64::MAX,
@@ -170,17 +170,15 @@ pub(super) fn strategies(request: &HuntRequest) -> Vec<Strategy> {
         Symmetry::Group(group) => vec![group.clone()],
         Symmetry::Auto => groups(request.runs),
     };
-    let chosen = request.symmetry != Symmetry::Auto;
     for group in groups {
-        let solve = |moving, elementary| Strategy::Solve { group: group.clone(), moving, elementary };
-        list.push(solve(false, false));
-        if chosen && !group.is_empty() {
-            list.push(solve(true, false));
-        }
+        let solve = |motion, elementary| Strategy::Solve { group: group.clone(), motion, elementary };
+        list.push(solve(Motion::Any, false));
         // Vectors of levels differ from numbers where a group acts on prime powers.
         let powers = |s: u16| group.iter().any(|&n| s > n && is_power(s, n));
-        if group.len() > 1 && request.mix.levels().iter().any(|&s| powers(s)) {
-            list.push(solve(true, true));
+        if group.len() > 1 {
+            list.push(solve(Motion::Varied, request.mix.levels().iter().any(|&s| powers(s))));
+        } else if !group.is_empty() && request.symmetry != Symmetry::Auto {
+            list.push(solve(Motion::Varied, false));
         }
     }
     let free = |s: &Strategy| match &request.symmetry {
