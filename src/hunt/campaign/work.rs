@@ -453,7 +453,7 @@ mod tests {
                     Work::Met(placed) => placed.is_some_and(|p| !p.columns.is_empty()),
                     work => panic!("{mix} {:?}: {work:?}", list.strategy(strategy)),
                 };
-                assert!((0..5).any(meets), "{mix} {:?}", list.strategy(strategy));
+                assert!((0..6).any(meets), "{mix} {:?}", list.strategy(strategy));
             }
         }
     }
