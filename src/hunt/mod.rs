@@ -6,6 +6,7 @@
 //! | `blocks` | two-level columns beside one p-level column in 4p runs |
 //! | `circulants` | four rows for the array of Goethals and Seidel |
 //! | `effort` | the budget of a search, in steps |
+//! | `exact` | arrays with a prescribed group, or the proof that there are none |
 //! | `flats` | slices, unions of flats, that are an array of strength 3 together |
 //! | `latin` | quasi-difference matrices and V vectors |
 //! | `quadratics` | difference schemes over Z3 in blocks of order 3 |
@@ -26,6 +27,7 @@ pub mod blocks;
 mod circulants;
 mod clique;
 mod effort;
+pub mod exact;
 pub mod flats;
 mod frame;
 mod halves;
