@@ -70,6 +70,10 @@ impl Action {
         Some(Self { runs, order, orbits: runs / order, group: group.to_vec(), elements })
     }
 
+    pub(in crate::hunt) fn runs(&self) -> usize {
+        self.runs
+    }
+
     /// The kinds of columns of `levels` levels that can be balanced: one character per kernel,
     /// because two with the same kernel differ by a renaming of the levels.
     pub(in crate::hunt) fn kinds(&self, levels: u16) -> Vec<Kind> {
@@ -136,7 +140,7 @@ impl Action {
         room
     }
 
-    pub(super) fn column(&self, kind: &Kind, base: Vec<u8>) -> Column {
+    pub(in crate::hunt) fn column(&self, kind: &Kind, base: Vec<u8>) -> Column {
         let mut masks = vec![0u128; kind.levels];
         self.fill(kind, &base, &mut masks);
         let (values, shifts) = (kind.values.clone(), kind.shifts.clone());
@@ -183,7 +187,7 @@ pub(super) fn bits(mut set: u128) -> impl Iterator<Item = usize> {
 
 /// Whether a balanced column meets every part of an even partition of the runs equally often on
 /// each level. The last part and the last level follow from the others.
-pub(super) fn fits(parts: &[u128], masks: &[u128], runs: usize) -> bool {
+pub(in crate::hunt) fn fits(parts: &[u128], masks: &[u128], runs: usize) -> bool {
     let cells = parts.len() * masks.len();
     if !runs.is_multiple_of(cells) {
         return false;
@@ -193,7 +197,7 @@ pub(super) fn fits(parts: &[u128], masks: &[u128], runs: usize) -> bool {
 }
 
 /// The partition of the runs by two columns.
-pub(super) fn product(a: &[u128], b: &[u128]) -> Vec<u128> {
+pub(in crate::hunt) fn product(a: &[u128], b: &[u128]) -> Vec<u128> {
     a.iter().flat_map(|x| b.iter().map(move |y| x & y)).collect()
 }
 

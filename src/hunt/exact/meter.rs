@@ -13,6 +13,12 @@ impl<'e, 'h> Meter<'e, 'h> {
         Self { effort, left: steps }
     }
 
+    /// A meter within this one, of no more steps than given.
+    pub(in crate::hunt) fn part(&mut self, steps: u64) -> Meter<'_, 'h> {
+        let left = steps.min(self.left);
+        Meter { effort: &mut *self.effort, left }
+    }
+
     /// Takes steps from both; false when one of them is used up.
     pub(in crate::hunt) fn spend(&mut self, steps: u64) -> bool {
         self.left = self.left.saturating_sub(steps);

@@ -22,8 +22,9 @@ mod shares;
 
 pub use decide::{ExactHunt, Outcome, decide};
 
-pub(super) use action::{Action, Column};
-pub(super) use search::{Answer, Search, Store};
+pub(super) use action::{Action, Column, Kind, fits};
+pub(super) use meter::Meter;
+pub(super) use search::{Answer, Search, Store, joint};
 
 /// The largest number of runs that is searched.
 pub const MAX_RUNS: u32 = 128;

@@ -139,7 +139,7 @@ impl Search<'_> {
 
 /// The partitions that later columns must fit when `column` joins the chosen ones, beside those
 /// that they fit already.
-pub(super) fn joint(strength: usize, chosen: &[Column], column: &Column) -> Vec<Vec<u128>> {
+pub(in crate::hunt) fn joint(strength: usize, chosen: &[Column], column: &Column) -> Vec<Vec<u128>> {
     if strength == 2 || chosen.is_empty() {
         return vec![column.masks.clone()];
     }
