@@ -51,7 +51,8 @@ impl Action {
     /// `None` when the group has more elements than there are runs, or does not divide them.
     pub(in crate::hunt) fn new(runs: u32, group: &[u16]) -> Option<Self> {
         let order = group.iter().try_fold(1u32, |n, &g| n.checked_mul(u32::from(g)))?;
-        if runs == 0 || runs > super::MAX_RUNS || group.iter().any(|&n| n < 2) || !runs.is_multiple_of(order) {
+        if runs == 0 || runs > super::MAX_RUNS || group.iter().any(|&n| n < 2) || !runs.is_multiple_of(order)
+        {
             return None;
         }
         let elements = (0..order)

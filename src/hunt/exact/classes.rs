@@ -91,7 +91,9 @@ mod tests {
         let given: Vec<Vec<u128>> = columns.iter().map(|c| c.masks.clone()).collect();
         for (i, kind) in action.kinds(s).iter().enumerate() {
             let mut generator = Generator::new(&action, kind, &given, None).unwrap();
-            generator.run(&mut Meter::new(&mut Effort::unlimited(), u64::MAX), &mut |base| keys.insert((i, classes.key(kind, base))) | true);
+            generator.run(&mut Meter::new(&mut Effort::unlimited(), u64::MAX), &mut |base| {
+                keys.insert((i, classes.key(kind, base))) | true
+            });
         }
         keys.len()
     }

@@ -3,7 +3,6 @@
 use super::action::{Action, Kind};
 use super::meter::Meter;
 
-
 /// How an enumeration ended.
 #[derive(Clone, Copy, PartialEq, Eq, Debug)]
 pub(super) enum End {

@@ -4,8 +4,8 @@ use std::collections::BTreeMap;
 
 use super::action::{Action, Column, Kind, fits, product};
 use super::classes::Classes;
-use super::meter::Meter;
 use super::matrix::Matrix;
+use super::meter::Meter;
 
 /// The candidates of one kind.
 pub(in crate::hunt) struct Store {
@@ -87,7 +87,8 @@ impl Search<'_> {
         if lists.iter().zip(missing.iter()).any(|(l, &m)| l.len() < m) {
             return Answer::None;
         }
-        let size: usize = lists.iter().zip(missing.iter()).filter(|(_, m)| **m > 0).map(|(l, _)| l.len()).sum();
+        let size: usize =
+            lists.iter().zip(missing.iter()).filter(|(_, m)| **m > 0).map(|(l, _)| l.len()).sum();
         let classes = Classes::new(self.action, chosen);
         if self.strength == 2 && (size <= SMALL || (size <= LARGE && !classes.any())) {
             return Matrix::new(self, lists, missing).decide(chosen, missing, meter);
@@ -106,8 +107,7 @@ impl Search<'_> {
                     return Answer::UsedUp;
                 }
                 let keep = |&i: &u32| {
-                    missing[j] > 0
-                        && parts.iter().all(|p| fits(p, self.stores[j].masks(i), self.action.runs))
+                    missing[j] > 0 && parts.iter().all(|p| fits(p, self.stores[j].masks(i), self.action.runs))
                 };
                 child.push(list.iter().copied().filter(keep).collect());
             }

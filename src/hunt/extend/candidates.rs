@@ -165,15 +165,20 @@ mod tests {
         let joining = Joining::new(n * n, n, given).unwrap();
         let (mut count, mut effort) = (0, Effort::unlimited());
         let mut meter = Meter::new(&mut effort, u64::MAX);
-        LevelSets::new(&joining.cells, &joining.need).run(0, joining.everything(), &mut meter, &mut |_, _| {
-            count += 1;
-            true
-        });
+        LevelSets::new(&joining.cells, &joining.need).run(
+            0,
+            joining.everything(),
+            &mut meter,
+            &mut |_, _| {
+                count += 1;
+                true
+            },
+        );
         count
     }
 
     /// The cyclic squares of order 3, 5, 7 have 3, 15, 133 transversals and those of even order
-    /// none (OEIS A006717; Euler 1782).
+    /// none (OEIS A006717 [memory]; Euler 1782).
     #[test]
     fn transversals_of_cyclic_squares() {
         for (n, count) in [(3, 3), (4, 0), (5, 15), (6, 0), (7, 133)] {
@@ -183,8 +188,8 @@ mod tests {
         assert_eq!(level_sets(&square(|r, c| r ^ c, 4), 4), 8);
     }
 
-    /// The 148,600 two-level columns beside two crossed six-level ones (half of OEIS A058527), and
-    /// the 9 ways to split a cyclic square of order 5 into transversals would be 3: its mates.
+    /// The 148,600 two-level columns beside two crossed six-level ones (half of OEIS A058527
+    /// [memory]), and the three ways to split a cyclic square of order 5 into transversals.
     #[test]
     fn columns_are_counted() {
         let mut effort = Effort::unlimited();

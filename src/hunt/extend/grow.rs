@@ -43,8 +43,10 @@ struct Growth<'a> {
     chosen: Vec<Column>,
     /// Which kind each added column is of.
     added: Vec<usize>,
-    /// Kinds of which no more columns are looked for, and whether that is because none fits.
+    /// Kinds of which no more columns are looked for.
     closed: Vec<bool>,
+    /// Kinds of which not even one fits beside the given columns.
+    never: Vec<bool>,
 }
 
 impl<'a> Growth<'a> {
@@ -56,8 +58,8 @@ impl<'a> Growth<'a> {
         let chosen = request.array.levels().iter().zip(request.array.columns()).map(column).collect();
         let kinds: Vec<Option<Kind>> =
             request.wanted.iter().map(|w| action.kinds(w.levels).into_iter().next()).collect();
-        let closed = kinds.iter().map(Option::is_none).collect();
-        Self { request, action, kinds, chosen, added: Vec::new(), closed }
+        let never: Vec<bool> = kinds.iter().map(Option::is_none).collect();
+        Self { request, action, kinds, chosen, added: Vec::new(), closed: never.clone(), never }
     }
 
     fn strength(&self) -> usize {
@@ -104,6 +106,7 @@ impl<'a> Growth<'a> {
             Some(Candidates::UsedUp) => return None,
         }
         self.closed[j] |= store.len() == 0;
+        self.never[j] |= self.closed[j] && self.added.is_empty();
         Some(Some(store))
     }
 
@@ -183,16 +186,21 @@ impl<'a> Growth<'a> {
         let mut columns: Vec<(usize, Column)> =
             self.added.iter().copied().zip(self.chosen.drain(given..)).collect();
         columns.sort_by_key(|(j, _)| *j);
-        let complete =
-            (0..self.kinds.len()).all(|j| self.request.wanted[j].most == Some(self.count(j)));
+        let complete = (0..self.kinds.len()).all(|j| self.request.wanted[j].most == Some(self.count(j)));
+        let full = (0..self.kinds.len()).all(|j| self.never[j] || self.enough(j, self.count(j)));
         let standing = match proved {
             _ if complete => Standing::Complete,
+            _ if full => Standing::Maximum,
             Proved::Maximum => Standing::Maximum,
             Proved::Maximal => Standing::Maximal,
             Proved::Nothing => Standing::Met,
         };
         let symbols = |c: &Column| c.base.iter().map(|&b| u16::from(b)).collect();
         let none = columns.is_empty() && !matches!(proved, Proved::Nothing);
-        Grown { columns: columns.iter().map(|(_, c)| (c.levels as u16, symbols(c))).collect(), none, standing }
+        Grown {
+            columns: columns.iter().map(|(_, c)| (c.levels as u16, symbols(c))).collect(),
+            none,
+            standing,
+        }
     }
 }
