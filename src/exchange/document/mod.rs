@@ -7,6 +7,7 @@
 //! | [`RecheckDocument`] | `recheck --json` |
 //! | [`FloorDocument`] | `floor --json` |
 //! | [`CatalogDocument`] | `catalog --json` |
+//! | [`HuntDocument`] | `hunt --json` |
 //!
 //! They borrow what they print, so an array is never copied. Keys are stable; the JSON Schemas in
 //! the folder `schema/` are generated from these types.
@@ -14,12 +15,14 @@
 mod catalog;
 mod certify;
 mod floor;
+mod hunt;
 mod recheck;
 mod seek;
 
 pub use catalog::CatalogDocument;
 pub use certify::{CertifyDocument, NamedWitness};
 pub use floor::{BoundDocument, FloorDocument};
+pub use hunt::{BestPart, FindPart, HuntDocument, HuntVerdict};
 pub use recheck::{RecheckDocument, RecipeCheck};
 pub use seek::{
     ErrorDocument, FloorPart, FoundDocument, NothingDocument, NothingVerdict, Rows, SeekDocument,
