@@ -74,7 +74,7 @@ pub enum Extended {
 /// Why a request makes no sense, or an answer was not let out.
 #[derive(Clone, Debug, PartialEq, Eq, thiserror::Error)]
 pub enum ExtendError {
-    /// Another strength, nothing wanted, or something with fewer than two levels.
+    /// Another strength, nothing wanted, a kind named twice or with fewer than two levels.
     #[error("columns can be added at strength 2 or 3; each kind is named once and has 2 levels or more")]
     Request,
     /// Too many runs.
@@ -106,7 +106,7 @@ pub enum ExtendError {
 /// `request`: see [`Extension`]. All of these must hold:
 /// * at most [`MAX_RUNS`] runs; strength 2 or 3, and the array has it (an array of two columns
 ///   strength 2, an array of one column strength 1);
-/// * at least one kind is wanted, each named once, of 2 levels or more.
+/// * at least one kind is wanted, each named once, of 2 levels or more, at least one column of it.
 ///
 /// `effort`: a step is about one comparison of two columns.
 ///
@@ -147,7 +147,7 @@ pub fn extend(request: &Extension, effort: &mut Effort) -> Result<Extended, Exte
     let once = |(i, w): (usize, &Wanted)| wanted[..i].iter().all(|v| v.levels != w.levels);
     if !matches!(strength, 2 | 3)
         || wanted.is_empty()
-        || wanted.iter().any(|w| w.levels < 2)
+        || wanted.iter().any(|w| w.levels < 2 || w.most == Some(0))
         || !wanted.iter().enumerate().all(once)
     {
         return Err(ExtendError::Request);

@@ -189,6 +189,7 @@ fn requests_that_make_no_sense() {
     assert_eq!(fails(request(array(), 4, &[(3, None)])), ExtendError::Request);
     assert_eq!(fails(request(array(), 2, &[])), ExtendError::Request);
     assert_eq!(fails(request(array(), 2, &[(1, None)])), ExtendError::Request);
+    assert_eq!(fails(request(array(), 2, &[(3, Some(0))])), ExtendError::Request);
     assert_eq!(fails(request(array(), 2, &[(3, None), (3, Some(1))])), ExtendError::Request);
     assert_eq!(fails(request(array(), 3, &[(3, None)])), ExtendError::Strength { strength: 3 });
     let long = Array::from_fn(129, vec![3], |run, _| (run % 3) as u16).unwrap();

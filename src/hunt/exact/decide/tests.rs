@@ -222,7 +222,7 @@ fn plain_backtracking_agrees() {
         (16, &[&[4], &[2, 2], &[8], &[2, 4]]),
         (18, &[&[3, 3], &[6], &[9]]),
     ] {
-        for (all, some) in compared.iter_mut().zip(compare(runs, groups, 20_000)) {
+        for (all, some) in compared.iter_mut().zip(compare(runs, groups, 8_000)) {
             *all += some;
         }
     }
