@@ -7,6 +7,8 @@
 //! | `campaign` | a hunt as a list of tasks: several methods and groups in turn, resumable, in parts |
 //! | `circulants` | four rows for the array of Goethals and Seidel |
 //! | `effort` | the budget of a search, in steps |
+//! | `exact` | arrays with a prescribed group, or the proof that there are none |
+//! | `extend` | further columns for a given array, or the proof that there are none |
 //! | `flats` | slices, unions of flats, that are an array of strength 3 together |
 //! | `latin` | quasi-difference matrices and V vectors |
 //! | `quadratics` | difference schemes over Z3 in blocks of order 3 |
@@ -28,6 +30,8 @@ pub mod campaign;
 mod circulants;
 mod clique;
 mod effort;
+pub mod exact;
+pub mod extend;
 pub mod flats;
 mod frame;
 mod halves;
