@@ -68,7 +68,7 @@ fn a_find_is_judged_again_and_is_a_seed() {
     ]);
     assert_eq!(code(&output), 0, "{}", stderr(&output));
     assert_eq!(code(&bench.run(&["recheck", "c.json", "plan.csv"])), 0);
-    let seed: trysquare::catalog::Seed = bench.get("s.seed").parse().unwrap();
+    let seed: trysquare::catalog::seed::Seed = bench.get("s.seed").parse().unwrap();
     assert_eq!(seed.source, "computed: trysquare hunt \"2^8 5^1\" --runs 20 --seed 1");
     assert_eq!(code(&bench.run(&["hunt", "2^12 7", "--runs", "28", "--tasks", "1", "--starter", "t"])), 4);
     assert_eq!(
@@ -174,4 +174,38 @@ fn an_interrupt_keeps_the_state() {
     assert!(before > 0);
     bench.run(&["hunt", "--resume", &kept[0], "--seconds", "2", "--quiet"]);
     assert!(done(&bench.get(&kept[0])) > before, "it goes on where it was");
+}
+
+#[test]
+fn riding_along() {
+    let bench = Bench::new();
+    let make = |mix: &str, file: &str| {
+        assert_eq!(code(&bench.run(&["seek", mix, "--quiet", "--out", file])), 0);
+    };
+    make("2^4 3", "twelve.csv");
+    make("2^5", "eight.csv");
+    bench.put(
+        "square.csv",
+        "oven,shelf,alloy\nA,p,x\n0,1,b\n0,2,c\n1,0,b\n1,1,c\n1,2,a\n2,0,c\n2,1,a\n2,2,b\n",
+    );
+    assert_snapshot!("extend_none", bench.show(&["hunt", "--from", "twelve.csv"]));
+    assert_snapshot!("extend_some", bench.show(&["hunt", "--from", "eight.csv"]));
+    assert_snapshot!("extend_asked", bench.show(&["hunt", "--from", "square.csv", "3"]));
+    assert_snapshot!("extend_too_many", bench.show(&["hunt", "--from", "eight.csv", "2^3"]));
+    let output =
+        bench.run(&["hunt", "--from", "square.csv", "--json", "--certificate", "c.json", "--out", "o.json"]);
+    assert_eq!(code(&output), 0);
+    assert_eq!(code(&bench.run(&["recheck", "c.json", "o.json"])), 0);
+    let document: Value = serde_json::from_str(&bench.get("o.json")).unwrap();
+    assert_eq!((&document["verdict"], &document["given"]), (&"extended".into(), &3.into()));
+    let wrong = Bench::with("wrong.csv", "a,b\n0,0\n0,1\n1,0\n1,0\n");
+    assert_snapshot!("extend_wrong", wrong.show(&["hunt", "--from", "wrong.csv"]));
+    assert_eq!(code(&wrong.run(&["hunt", "--from", "wrong.csv", "--runs", "4"])), 2);
+}
+
+#[test]
+fn proved_impossible() {
+    let bench = Bench::new();
+    assert_snapshot!("impossible", bench.show(&["hunt", "2^5 3", "--runs", "12"]));
+    assert_snapshot!("impossible_under", bench.show(&["hunt", "2^2 6", "--runs", "12", "--symmetry", "Z12"]));
 }

@@ -8,12 +8,14 @@
 //! | [`FloorDocument`] | `floor --json` |
 //! | [`CatalogDocument`] | `catalog --json` |
 //! | [`HuntDocument`] | `hunt --json` |
+//! | [`ExtendDocument`] | `hunt --from … --json` |
 //!
 //! They borrow what they print, so an array is never copied. Keys are stable; the JSON Schemas in
 //! the folder `schema/` are generated from these types.
 
 mod catalog;
 mod certify;
+mod extend;
 mod floor;
 mod hunt;
 mod recheck;
@@ -21,6 +23,7 @@ mod seek;
 
 pub use catalog::CatalogDocument;
 pub use certify::{CertifyDocument, NamedWitness};
+pub use extend::{ExtendDocument, ExtendVerdict, KindPart, KindStanding};
 pub use floor::{BoundDocument, FloorDocument};
 pub use hunt::{BestPart, FindPart, HuntDocument, HuntVerdict};
 pub use recheck::{RecheckDocument, RecipeCheck};

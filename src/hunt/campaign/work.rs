@@ -10,6 +10,7 @@ use crate::construct::{OrbitColumn, block_types, field::flats};
 use crate::hunt::beside::{Base, BesideHunt, attempts_beside};
 use crate::hunt::blocks::{BlockSearch, blocks};
 use crate::hunt::effort::Effort;
+use crate::hunt::exact::{self, ExactHunt, decide};
 use crate::hunt::random::Random;
 use crate::hunt::slices;
 use crate::hunt::symmetric::{Motion, SymmetricHunt, attempts};
@@ -35,6 +36,8 @@ pub(super) enum Strategy {
     Blocks { p: u16, multiplier: u16, order: u16 },
     /// Slices of 16 runs from Hadamard matrices, strength 3.
     Slices { slices: u16, factors: usize },
+    /// Go through all arrays under a group.
+    Decide { group: Vec<u16> },
 }
 
 /// What a task came to.
@@ -56,13 +59,14 @@ impl Strategy {
             Self::Beside { .. } => "orbits of columns beside a base",
             Self::Blocks { .. } => "block types",
             Self::Slices { .. } => "slices of Hadamard matrices",
+            Self::Decide { .. } => "going through all arrays",
         }
     }
 
     /// The name of the group.
     pub(super) fn symmetry(&self) -> String {
         match self {
-            Self::Solve { group, .. } => group_name(group),
+            Self::Solve { group, .. } | Self::Decide { group } => group_name(group),
             Self::Beside { symmetry, .. } => symmetry.clone(),
             Self::Blocks { order: 1, .. } | Self::Slices { .. } => "none".to_owned(),
             Self::Blocks { order, .. } => format!("Z{order} on blocks"),
@@ -100,6 +104,20 @@ impl Strategy {
                 (Vec::new(), block_columns(*p, *multiplier, wanted, seed, effort))
             }
             Self::Slices { slices, factors } => (Vec::new(), slice_columns(*slices, *factors, seed, effort)),
+            Self::Decide { group } => {
+                let hunt = ExactHunt {
+                    runs: request.runs,
+                    levels: request.mix.levels().to_vec(),
+                    strength: request.strength,
+                    group: group.clone(),
+                    most_candidates: (1 << 12) << round.min(9),
+                };
+                match decide(&hunt, effort) {
+                    Some(exact::Outcome::Found(columns)) => (group.clone(), Some(columns)),
+                    Some(exact::Outcome::Impossible) if !effort.halted() => return Work::Exhausted,
+                    _ => (group.clone(), None),
+                }
+            }
         };
         if effort.halted() {
             return Work::Halted;
@@ -173,6 +191,7 @@ pub(super) fn strategies(request: &HuntRequest) -> Vec<Strategy> {
     for group in groups {
         let solve = |motion, elementary| Strategy::Solve { group: group.clone(), motion, elementary };
         list.push(solve(Motion::Any, false));
+        list.push(Strategy::Decide { group: group.clone() });
         // Vectors of levels differ from numbers where a group acts on prime powers.
         let powers = |s: u16| group.iter().any(|&n| s > n && is_power(s, n));
         if group.len() > 1 {
@@ -325,7 +344,8 @@ fn form_plans(n: u16, big: &[u16], wanted: [usize; 2]) -> Vec<Plan> {
             list
         }
         [] if wanted[1] > 1 && n.is_multiple_of(9) => {
-            let side = (3..n).step_by(3).find(|s| n.is_multiple_of(*s) && s * s >= n && n / s % 3 == 0);
+            let side =
+                (3..n).step_by(3).find(|s| n.is_multiple_of(*s) && s * s >= n && (n / s).is_multiple_of(3));
             let side = side.unwrap_or(n / 3);
             vec![plan(vec![n / side, side], vec![(3, vec![1, 0]), (3, vec![0, 1])], third(2))]
         }
@@ -449,6 +469,10 @@ mod tests {
             let list = WorkList::new(&request);
             let m = list.strategies.len() as u64;
             for strategy in 0..m {
+                // These two meet something only when they find everything.
+                if matches!(list.strategy(strategy), Strategy::Decide { .. } | Strategy::Slices { .. }) {
+                    continue;
+                }
                 let meets = |round| match list.run(strategy + m * round, &|| false) {
                     Work::Met(placed) => placed.is_some_and(|p| !p.columns.is_empty()),
                     work => panic!("{mix} {:?}: {work:?}", list.strategy(strategy)),

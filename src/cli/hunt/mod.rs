@@ -1,17 +1,21 @@
+mod extend;
+mod watch;
+
 use std::path::Path;
 use std::sync::{Arc, Mutex, PoisonError};
 use std::time::{Duration, Instant};
 
 use clap::{Args, ValueEnum};
-use sha2::{Digest, Sha256};
 
+use self::watch::{Watcher, best, keep};
+use super::flags::ReadFlags;
 use super::output::{self, Output};
 use super::progress::Progress;
 use super::{ExitCode, Failure, flags, input, words};
 use crate::exchange::document::HuntDocument;
 use crate::exchange::{Header, Symbols, csv, text};
 use crate::hunt::campaign::{
-    Find, HuntRequest, Impossible, Observer, Outcome, Placed, Shard, State, Stopped, Symmetry, run as hunt,
+    Find, HuntRequest, Impossible, Outcome, Shard, State, Stopped, Symmetry, run as hunt,
 };
 use crate::hunt::orbits_seed;
 use crate::mix::Mix;
@@ -28,21 +32,27 @@ Examples:
   trysquare hunt \"2^8 6^3\" --runs 36 --seconds 60
   trysquare hunt \"2^16 11\" --runs 44 --resume state.json      go on from the state, if there is one
   trysquare hunt \"2^16 11\" --runs 44 --shard 3/8 --json       the third of eight parts of the work
+  trysquare hunt --from plan.csv                  which more factors could ride along?
+  trysquare hunt --from plan.csv \"2^2 3\"          could these?
 
 Ctrl-C keeps the state: in the file of --resume, else in a new one that is named. Of several
-shards the find with the smallest \"task\" is what a single run would give.")]
+shards the find with the smallest \"task\" is what a single run would give.
+
+With --from the columns of a given array are kept and others are added: those of MIX, or as many
+as possible. The exit code is 0 when all columns of MIX, or at least one, could be added, 1 when
+it is proved that they cannot, and 4 when the search ended before that was known.")]
 pub(super) struct Flags {
     /// The factors as levels^factors, such as "2^8 6^3"; the columns keep this order
-    #[arg(value_name = "MIX", required_unless_present = "resume")]
+    #[arg(value_name = "MIX", required_unless_present_any = ["resume", "from"])]
     mix: Vec<String>,
     /// The number of runs, at most 128
-    #[arg(long, value_name = "N", required_unless_present = "resume")]
+    #[arg(long, value_name = "N", required_unless_present_any = ["resume", "from"])]
     runs: Option<u32>,
     /// The strength, 2 or 3 [default: 2]
     #[arg(long, value_name = "T")]
     strength: Option<u32>,
     /// The symmetry of the array: auto (several in turn), none, or a group such as Z3 or Z3xZ3 that
-    /// acts freely on the runs [default: auto]
+    /// acts freely on the runs and adds constants to the levels [default: auto]
     #[arg(long, value_name = "GROUP")]
     symmetry: Option<String>,
     /// The seed of the random numbers [default: 1]
@@ -60,6 +70,13 @@ pub(super) struct Flags {
     /// Do part I of N of the work list [default: 1/1]
     #[arg(long, value_name = "I/N")]
     shard: Option<String>,
+    /// Add columns to the array in this file; - for stdin
+    #[arg(
+        long,
+        value_name = "FILE",
+        conflicts_with_all = ["runs", "symmetry", "seed", "tasks", "resume", "shard", "starter"]
+    )]
+    from: Option<String>,
     /// How the array is written [default: csv]
     #[arg(long, value_enum)]
     format: Option<Format>,
@@ -84,6 +101,8 @@ pub(super) struct Flags {
     /// No account on stderr
     #[arg(long)]
     quiet: bool,
+    #[command(flatten)]
+    reading: ReadFlags,
 }
 
 #[derive(Clone, Copy, PartialEq, Eq, ValueEnum)]
@@ -110,14 +129,18 @@ pub(super) fn run(flags: &Flags) -> Result<ExitCode, Failure> {
             }
         }
     };
+    let inputs: Vec<&str> = flags.from.as_deref().into_iter().collect();
     let outputs = [&flags.out, &flags.certificate, &flags.starter, &flags.resume];
-    output::distinct(&[], &outputs.map(Option::as_deref))?;
+    output::distinct(&inputs, &outputs.map(Option::as_deref))?;
     for (name, flag) in
         [(&flags.certificate, "--certificate"), (&flags.starter, "--starter"), (&flags.resume, "--resume")]
     {
         if name.as_deref() == Some("-") {
             return Err(Failure::usage(format!("{flag} needs a file: stdout is for the array")));
         }
+    }
+    if let Some(from) = &flags.from {
+        return extend::run(from, flags, format);
     }
     let state = flags.state()?;
     let request = state.request.clone();
@@ -312,34 +335,6 @@ impl Flags {
     }
 }
 
-/// Keeps a state in a new file.
-fn keep(state: &State) -> Result<String, Failure> {
-    let text = state.to_json();
-    let request = serde_json::to_string(&state.request).unwrap_or_default();
-    let digest: String = Sha256::digest(request).iter().take(4).map(|b| format!("{b:02x}")).collect();
-    let name = format!("trysquare-hunt-{digest}.json");
-    write_state(&name, &text)?;
-    Ok(name)
-}
-
-fn write_state(name: &str, text: &str) -> Result<(), Failure> {
-    let mut out = Output::open(Some(name))?;
-    out.write(|out| out.write_all(text.as_bytes()))?;
-    out.finish()
-}
-
-/// `10 of 11 columns, 23 degrees of freedom`.
-fn best(state: &State, factors: usize) -> String {
-    let met = |p: &Placed| {
-        format!(
-            "best {} of {factors} columns ({} degrees of freedom)",
-            p.columns.len(),
-            p.degrees_of_freedom()
-        )
-    };
-    state.best.as_ref().map_or_else(|| "nothing met yet".to_owned(), met)
-}
-
 fn best_met(stopped: &Stopped) -> String {
     let Some(find) = &stopped.best else { return "nothing was met".to_owned() };
     let levels = find.array.levels().to_vec();
@@ -386,8 +381,8 @@ fn impossible(request: &HuntRequest, reason: &Impossible) -> String {
             request.strength
         ),
         Impossible::Exhausted { symmetry } => format!(
-            "proved impossible under {symmetry}: no array of {} for {} at strength {} has this symmetry; \
-             others may exist: try --symmetry auto",
+            "proved impossible under {symmetry}: in no array of {} for {} at strength {} does this group act \
+             freely on the runs and add constants to the levels; others may exist: try --symmetry auto",
             words::count(request.runs.into(), "run"),
             request.mix,
             request.strength
@@ -419,89 +414,4 @@ fn account(request: &HuntRequest, find: &Find, time: Duration) -> String {
         ("before use", words::CAUTION.to_owned()),
     ];
     words::labelled(&lines)
-}
-
-/// What stands beside the spinner.
-#[derive(Default)]
-struct Line {
-    task: String,
-    best: String,
-    done: u64,
-}
-
-impl Line {
-    fn text(&self, begin: Instant, end: Option<Instant>) -> String {
-        let seconds = begin.elapsed().as_secs_f64().max(0.001);
-        let left = end.map_or_else(String::new, |end| {
-            format!("; {} s left", end.saturating_duration_since(Instant::now()).as_secs())
-        });
-        format!("{}; {}; {:.1} tasks/s{left}", self.task, self.best, self.done as f64 / seconds)
-    }
-}
-
-/// Keeps the state in a file and the line beside the spinner true.
-struct Watcher<'a> {
-    file: Option<&'a str>,
-    end: Option<Instant>,
-    factors: usize,
-    first: u64,
-    /// When the state was written last, and the state if it is newer.
-    saved: Mutex<Option<(Instant, Option<State>)>>,
-    line: Arc<Mutex<Line>>,
-}
-
-/// The least time between two writings of the state.
-const PAUSE: Duration = Duration::from_millis(500);
-
-impl Watcher<'_> {
-    fn show(&self, change: impl FnOnce(&mut Line)) {
-        change(&mut self.line.lock().unwrap_or_else(PoisonError::into_inner));
-    }
-
-    fn saved(&self) -> std::sync::MutexGuard<'_, Option<(Instant, Option<State>)>> {
-        self.saved.lock().unwrap_or_else(PoisonError::into_inner)
-    }
-
-    /// The state that is not written down yet.
-    fn last(&self) -> Option<State> {
-        self.saved().take().and_then(|(_, state)| state)
-    }
-
-    fn save(&self, state: &State) {
-        let Some(name) = self.file else { return };
-        if let Err(failure) = write_state(name, &state.to_json()) {
-            output::remark(&format!("note: the state is not kept: {}", failure.message));
-        }
-        *self.saved() = Some((Instant::now(), None));
-    }
-}
-
-impl Observer for Watcher<'_> {
-    fn interrupt(&self) -> bool {
-        output::interrupted()
-    }
-
-    fn time_is_over(&self) -> bool {
-        self.end.is_some_and(|end| Instant::now() >= end)
-    }
-
-    fn begins(&self, task: u64, method: &'static str, symmetry: &str) {
-        self.show(|line| line.task = format!("task {task}: {method}, symmetry {symmetry}"));
-    }
-
-    fn changed(&self, state: &State) {
-        self.show(|line| {
-            line.best = best(state, self.factors);
-            line.done = state.tasks_done() - self.first;
-        });
-        if self.file.is_none() {
-            return;
-        }
-        let due = self.saved().as_ref().is_none_or(|(at, _)| at.elapsed() >= PAUSE);
-        if due || state.found.is_some() {
-            self.save(state);
-        } else if let Some((_, newer)) = self.saved().as_mut() {
-            *newer = Some(state.clone());
-        }
-    }
 }
