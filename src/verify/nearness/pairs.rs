@@ -196,16 +196,9 @@ impl Coded {
     fn correlations(&self, counts: &[u64], i: usize, j: usize, mut take: impl FnMut(Largest)) {
         let (first, second) = (&self.by_levels[&self.levels[i]], &self.by_levels[&self.levels[j]]);
         let s = usize::from(self.levels[j]);
-        let mut best: Option<(f64, u128, usize, usize)> = None;
+        let mut best = 0.0f64;
         for (d, (x, &(sum_x, spread_x))) in first.iter().zip(&self.sums[i]).enumerate() {
-            let weighted: Vec<i128> = (0..s)
-                .map(|b| {
-                    x.iter()
-                        .zip(counts[b..].iter().step_by(s))
-                        .map(|(&v, &n)| i128::from(v) * i128::from(n))
-                        .sum()
-                })
-                .collect();
+            let weighted: Vec<i128> = (0..s).map(|b| weigh(x, counts[b..].iter().step_by(s))).collect();
             for (e, (y, &(sum_y, spread_y))) in second.iter().zip(&self.sums[j]).enumerate() {
                 if spread_x == 0 || spread_y == 0 {
                     continue;
@@ -213,23 +206,26 @@ impl Coded {
                 let products: i128 = weighted.iter().zip(y).map(|(&w, &v)| w * i128::from(v)).sum();
                 let together = (self.runs * products - sum_x * sum_y).unsigned_abs();
                 let about = (together as f64 / spread_x as f64) * (together as f64 / spread_y as f64);
-                // Within a pair the first of what floats cannot tell apart is looked at exactly below.
-                if best.as_ref().is_none_or(|b| about > b.0 + 1e-9) {
-                    best = Some((about, together, d, e));
+                if about < best - 1e-9 {
+                    continue;
                 }
+                best = best.max(about);
+                take(Largest {
+                    numerator: BigUint::from(together).pow(2),
+                    denominator: BigUint::from(spread_x.unsigned_abs())
+                        * BigUint::from(spread_y.unsigned_abs()),
+                    about,
+                    columns: [i, j],
+                    degrees: [d as u32 + 1, e as u32 + 1],
+                });
             }
         }
-        if let Some((about, together, d, e)) = best {
-            take(Largest {
-                numerator: BigUint::from(together).pow(2),
-                denominator: BigUint::from(self.sums[i][d].1.unsigned_abs())
-                    * BigUint::from(self.sums[j][e].1.unsigned_abs()),
-                about,
-                columns: [i, j],
-                degrees: [d as u32 + 1, e as u32 + 1],
-            });
-        }
     }
+}
+
+/// Σ v·n.
+fn weigh<'a>(values: &[i64], counts: impl Iterator<Item = &'a u64>) -> i128 {
+    values.iter().zip(counts).map(|(&v, &n)| i128::from(v) * i128::from(n)).sum()
 }
 
 #[cfg(test)]
