@@ -1,4 +1,5 @@
 use crate::floor::FloorError;
+use crate::hunt::near::NearError;
 use crate::seek::SeekError;
 use crate::verify::JudgeError;
 
@@ -50,6 +51,17 @@ impl From<JudgeError> for Failure {
         match e {
             JudgeError::Strength { .. } => Self::usage(e),
             e @ JudgeError::Disagreement { .. } => Self::stopped(e),
+        }
+    }
+}
+
+impl From<NearError> for Failure {
+    fn from(e: NearError) -> Self {
+        match e {
+            NearError::Seek(e) => e.into(),
+            NearError::Judge(e) => e.into(),
+            NearError::TooLarge { .. } | NearError::Array(_) => Self::stopped(e),
+            e => Self::usage(e),
         }
     }
 }

@@ -9,4 +9,5 @@ mod batch;
 mod bench;
 mod commands;
 mod files;
+mod near;
 mod schema;

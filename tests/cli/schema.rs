@@ -5,7 +5,7 @@ use std::path::Path;
 use schemars::{JsonSchema, schema_for};
 use serde_json::{Value, json};
 use trysquare::exchange::document::{
-    CatalogDocument, CertifyDocument, FloorDocument, RecheckDocument, SeekDocument,
+    CatalogDocument, CertifyDocument, FloorDocument, NearDocument, RecheckDocument, SeekDocument,
 };
 use trysquare::floor::Proof;
 use trysquare::verify::Certificate;
@@ -18,9 +18,10 @@ fn schema<T: JsonSchema>() -> Value {
     schema
 }
 
-fn schemas() -> [(&'static str, Value); 7] {
+fn schemas() -> [(&'static str, Value); 8] {
     [
         ("seek", schema::<SeekDocument<'_>>()),
+        ("near", schema::<NearDocument<'_>>()),
         ("certify", schema::<CertifyDocument<'_>>()),
         ("recheck", schema::<RecheckDocument<'_>>()),
         ("floor", schema::<FloorDocument<'_>>()),

@@ -3,6 +3,7 @@
 //! | type | printed by |
 //! | --- | --- |
 //! | [`SeekDocument`] | `seek --json`, `seek --batch` |
+//! | [`NearDocument`] | `seek --budget --json`, when no exact array fits |
 //! | [`CertifyDocument`] | `certify --json` |
 //! | [`RecheckDocument`] | `recheck --json` |
 //! | [`FloorDocument`] | `floor --json` |
@@ -14,12 +15,17 @@
 mod catalog;
 mod certify;
 mod floor;
+mod near;
 mod recheck;
 mod seek;
 
 pub use catalog::CatalogDocument;
 pub use certify::{CertifyDocument, NamedWitness};
 pub use floor::{BoundDocument, FloorDocument};
+pub use near::{
+    CorrelationDocument, CriteriaDocument, EfficiencyDocument, NearDocument, NearVerdict, NextDocument,
+    PairDocument,
+};
 pub use recheck::{RecheckDocument, RecipeCheck};
 pub use seek::{
     ErrorDocument, FloorPart, FoundDocument, NothingDocument, NothingVerdict, Rows, SeekDocument,

@@ -120,7 +120,7 @@ mod tests {
         let mut random = Random::new(5);
         for (runs, fixed) in [(8, 0), (11, 3), (5, 5)] {
             let levels = [2, 3, 4, 3, 2];
-            let mut table = Table::new(runs, fixed, &levels);
+            let mut table = Table::new(runs, fixed, levels.len());
             let kept = vec![0; fixed];
             for (j, &s) in levels.iter().enumerate().skip(1) {
                 table.put(j, balanced_column(s, runs, &kept, &mut random));

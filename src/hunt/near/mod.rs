@@ -8,10 +8,12 @@
 //! | `climb` | one attempt, from a start to the best plan its effort yields |
 //! | `starts` | exact arrays to start from: one to shorten, some to widen |
 //! | `choice` | the best of several plans |
+//! | `page` | the page `catalog/NEAR.md` |
 
 mod choice;
 mod climb;
 mod exchange;
+mod page;
 mod plain;
 mod starts;
 mod table;
@@ -19,6 +21,7 @@ mod table;
 use rayon::prelude::*;
 use thiserror::Error;
 
+pub use page::page;
 pub use plain::random_balanced;
 
 use super::{Effort, Random};
@@ -29,12 +32,11 @@ use crate::mix::Mix;
 use crate::seek::{Answer, DEFAULT_MAX_RUNS, Outcome, Request, SeekError, Verdict, seek_on};
 use crate::verify::{self, Certificate, Demand, JudgeError, Nearness};
 use choice::Judged;
-use climb::climb;
+use climb::{Climb, Climbed};
 use starts::{Start, to_shorten, to_widen};
-use table::Table;
 
 /// The effort of a request that names none: some seconds at the most.
-pub const DEFAULT_EFFORT: u64 = 1 << 30;
+pub const DEFAULT_EFFORT: u64 = 1 << 29;
 
 /// Near plans have at most so many cells.
 pub const MOST_CELLS: u64 = 1 << 22;
@@ -45,6 +47,9 @@ const MOST_RUNS: usize = 1 << 11;
 
 /// At most so many attempts are made.
 const ATTEMPTS: u64 = 48;
+
+/// Of the plans with the least sum of squares, so many are judged by the other criteria.
+const FINALISTS: usize = 16;
 
 /// What is asked for.
 #[derive(Clone, Debug, PartialEq, Eq)]
@@ -194,7 +199,7 @@ pub enum NearError {
 ///
 /// Guarantee: a near plan has exactly `budget` runs, begins with the kept ones, and its level counts
 /// are as even as they allow (without any, they differ by at most one in each column). It is the
-/// best of many attempts by the sum of squared deviations of pair counts, then the largest
+/// best of many attempts (of the 16 with the least sum of squared deviations) by the sum of squared deviations of pair counts, then the largest
 /// correlation, then the D-efficiency, then the number of the attempt, among those that are by none of
 /// these worse than [`random_balanced`] from the same seed, which is one of them. Every plan is
 /// judged; one that is orthogonal at the strength asked for is certified and reported as such. The
@@ -280,28 +285,37 @@ fn search(
     let levels = request.mix.levels();
     let kept = request.kept.as_ref();
     let plain = Judged::new(random_balanced(levels, runs, kept, &mut Random::new(request.seed))?);
-    if plain.nearness.attains_the_bound() || runs > MOST_RUNS {
+    if plain.nearness.pairs == 0 {
         return Ok(plain);
     }
     let starts = starts(request, shelf, runs, exact);
     // Σ n_ab² less N·k(k − 1)/2 is what a table calls its score.
-    let constant = runs as u64 * plain.nearness.pairs;
-    let goal = plain.nearness.least_squares - constant;
+    let constant = (runs as u64).saturating_mul(plain.nearness.pairs);
+    let goal = plain.nearness.least_squares.saturating_sub(constant);
+    let climb = Climb { levels, runs, kept, goal };
     let one = (levels.len() as u64).saturating_mul((runs * runs) as u64).saturating_mul(8);
     let attempts = (request.effort / one).clamp(1 + starts.len() as u64, ATTEMPTS);
-    let attempt = |number: u64| -> Result<Array, ArrayError> {
+    let attempt = |number: u64| -> Climbed {
         // Each attempt has a sequence of its own, far from that of the plain plan.
         let mut random = Random::new(Random::new(request.seed ^ (number + 1).rotate_left(32)).bits());
         let mut effort = Effort::new(request.effort / attempts, &|| false);
-        let table = match (number as usize).checked_rem(starts.len() + 1).filter(|at| *at > 0) {
-            Some(at) => starts[at - 1].table(runs, levels, kept, &mut random),
-            None => Table::new(runs, kept.map_or(0, Array::runs), levels),
+        let given = match (number as usize).checked_rem(starts.len() + 1).filter(|at| *at > 0) {
+            Some(at) => starts[at - 1].columns(runs, levels, kept, &mut random),
+            None => vec![None; levels.len()],
         };
-        let columns = climb(table, kept, goal, &mut random, &mut effort).columns;
-        Array::from_columns(levels.iter().copied().zip(columns).collect())
+        if runs > MOST_RUNS {
+            climb.fill(given, &mut random)
+        } else {
+            climb.run(given, &mut random, &mut effort)
+        }
     };
-    let arrays = (0..attempts).into_par_iter().map(attempt).collect::<Result<Vec<_>, _>>()?;
-    Ok(choice::best(plain, distinct(arrays).into_iter().map(Judged::new).collect()))
+    let mut climbed: Vec<Climbed> = (0..attempts).into_par_iter().map(attempt).collect();
+    climbed.sort_by_key(|c| c.score);
+    let arrays =
+        climbed.into_iter().map(|c| Array::from_columns(levels.iter().copied().zip(c.columns).collect()));
+    let mut finalists = distinct(arrays.collect::<Result<Vec<_>, _>>()?);
+    finalists.truncate(FINALISTS);
+    Ok(choice::best(plain, finalists.into_par_iter().map(Judged::new).collect()))
 }
 
 /// Without those that came before.

@@ -6,16 +6,15 @@ pub(super) struct Table {
     pub(super) runs: usize,
     /// The runs that come first and may not change.
     pub(super) fixed: usize,
-    pub(super) levels: Vec<u16>,
     pub(super) columns: Vec<Option<Vec<u16>>>,
     /// δ_ij at i · runs + j, zero for i = j.
     pub(super) agree: Vec<i32>,
 }
 
 impl Table {
-    pub(super) fn new(runs: usize, fixed: usize, levels: &[u16]) -> Self {
-        let columns = vec![None; levels.len()];
-        Self { runs, fixed, levels: levels.to_vec(), columns, agree: vec![0; runs * runs] }
+    /// A table with places for so many columns, all empty.
+    pub(super) fn new(runs: usize, fixed: usize, factors: usize) -> Self {
+        Self { runs, fixed, columns: vec![None; factors], agree: vec![0; runs * runs] }
     }
 
     /// Σ_{i<j} δ_ij(δ_ij − 1): Σ n_ab² over the pairs of columns less N·k(k − 1)/2.
@@ -63,7 +62,7 @@ mod tests {
     #[test]
     fn the_score_is_that_of_the_pair_counts() {
         let columns = [vec![0u16, 1, 0, 1, 0], vec![0, 1, 2, 2, 0], vec![1, 1, 0, 0, 1]];
-        let mut table = Table::new(5, 0, &[2, 3, 2]);
+        let mut table = Table::new(5, 0, 3);
         for (j, column) in columns.iter().enumerate() {
             let (before, cost) = (table.score(), table.cost(column));
             table.put(j, column.clone());
