@@ -28,11 +28,8 @@ pub(super) fn to_widen(shelf: &Shelf, mix: &Mix, runs: usize) -> Vec<Start> {
     down.sort_by_key(|&j| (std::cmp::Reverse(mix.levels()[j]), j));
     let mut starts: Vec<Start> = Vec::new();
     for order in [up, down] {
-        if let Some(start) = longest(shelf, mix, runs, &order) {
-            if starts.iter().all(|known| known.factors != start.factors) {
-                starts.push(start);
-            }
-        }
+        let start = longest(shelf, mix, runs, &order);
+        starts.extend(start.filter(|start| starts.iter().all(|known| known.factors != start.factors)));
     }
     starts
 }
