@@ -17,6 +17,7 @@ fn main() -> Result<(), Box<dyn std::error::Error>> {
     let request = SymmetricHunt {
         runs: runs.parse()?,
         levels: mix.parse::<Mix>()?.levels().to_vec(),
+        strength: 2,
         group,
         fixed: vec![],
         moving: false,

@@ -1,4 +1,5 @@
 use crate::floor::FloorError;
+use crate::hunt::campaign::{HuntError, RunError};
 use crate::hunt::near::NearError;
 use crate::seek::SeekError;
 use crate::verify::JudgeError;
@@ -41,6 +42,24 @@ impl From<SeekError> for Failure {
     fn from(e: SeekError) -> Self {
         match e {
             SeekError::Floor(e) => e.into(),
+            e => Self::stopped(e),
+        }
+    }
+}
+
+impl From<HuntError> for Failure {
+    fn from(e: HuntError) -> Self {
+        match e {
+            e @ HuntError::State { .. } => Self { code: ExitCode::Input, message: e.to_string() },
+            e => Self::usage(e),
+        }
+    }
+}
+
+impl From<RunError> for Failure {
+    fn from(e: RunError) -> Self {
+        match e {
+            RunError::Request(e) => e.into(),
             e => Self::stopped(e),
         }
     }

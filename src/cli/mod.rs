@@ -2,7 +2,7 @@
 //!
 //! | file | what lives there |
 //! | --- | --- |
-//! | `seek`, `batch`, `certify`, `recheck`, `floor`, `catalog` | one command each (`batch` is `seek --batch`): its flags, `run`, and its sentences |
+//! | `seek`, `batch`, `certify`, `recheck`, `floor`, `catalog`, `hunt` | one command each (`batch` is `seek --batch`): its flags, `run`, and its sentences |
 //! | `exit` | the exit codes |
 //! | `failure` | why a command gave up, with its exit code |
 //! | `flags` | flags that several commands share |
@@ -21,6 +21,7 @@ mod exit;
 mod failure;
 mod flags;
 mod floor;
+mod hunt;
 mod input;
 mod near;
 mod output;
@@ -58,6 +59,7 @@ enum Command {
     Recheck(recheck::Flags),
     Floor(floor::Flags),
     Catalog(catalog::Flags),
+    Hunt(Box<hunt::Flags>),
 }
 
 /// Runs the program on the arguments of the process.
@@ -78,6 +80,7 @@ pub fn run() -> ExitCode {
         Command::Recheck(flags) => recheck::run(&flags),
         Command::Floor(flags) => floor::run(&flags),
         Command::Catalog(flags) => catalog::run(&flags),
+        Command::Hunt(flags) => hunt::run(&flags),
     };
     outcome.unwrap_or_else(|Failure { code, message }| {
         output::remark(&format!("error: {message}"));

@@ -1,7 +1,7 @@
 use super::certify::read_as;
 use super::output::{self, Output};
 use super::progress::Progress;
-use super::seek::{self, CAUTION, Flags, Format};
+use super::seek::{self, Flags, Format};
 use super::{ExitCode, Failure, flags, input, words};
 use crate::array::Array;
 use crate::exchange::document::NearDocument;
@@ -106,10 +106,13 @@ fn account(plan: &NearPlan, exact: Option<(&Certificate, Verdict)>) -> String {
         lines.push(("sha256", certificate.sha256.clone()));
     }
     if let Some(kept) = &request.kept {
-        lines.push(("kept", format!("the first {} as they were", words::count(kept.runs() as u64, "run"))));
+        lines.push((
+            "kept",
+            format!("{}, unchanged and first in the plan", words::count(kept.runs() as u64, "run")),
+        ));
     }
     lines.push(("seed", format!("{}; another --seed may find another plan", request.seed)));
-    lines.push(("before use", CAUTION.to_owned()));
+    lines.push(("before use", words::CAUTION.to_owned()));
     words::labelled(&lines)
 }
 
@@ -199,6 +202,9 @@ fn correlation(nearness: &Nearness) -> String {
     let Some(c) = &by_pairs.correlation else {
         return "not worked out: one factor, more than 32 levels, or factors that do not vary".into();
     };
+    if c.squared == "0" {
+        return "none between main effects of different factors".into();
+    }
     let name = |degree: u32| match degree {
         1 => "linear".to_owned(),
         2 => "quadratic".to_owned(),

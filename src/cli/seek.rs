@@ -294,13 +294,9 @@ fn account(answer: &Answer, flags: &Flags) -> String {
         lines.push(("seed", format!("{seed} was not needed: nothing was left to chance")));
     }
     lines.push(("check again", check_again(answer, flags)));
-    lines.push(("before use", CAUTION.to_owned()));
+    lines.push(("before use", words::CAUTION.to_owned()));
     words::labelled(&lines)
 }
-
-/// The caution that goes with every plan.
-pub(super) const CAUTION: &str = "the runs combine settings nobody may have run together: check each one against the\n\
-                       limits of the equipment, local rules and the judgement of whoever is licensed to run it";
 
 fn check_again(answer: &Answer, flags: &Flags) -> String {
     let file = flags.out.as_deref().filter(|n| *n != "-").map_or("FILE".into(), words::quoted);

@@ -4,6 +4,7 @@
 //! | --- | --- |
 //! | `beside` | columns of two and three levels beside given ones, under a group that permutes them |
 //! | `blocks` | two-level columns beside one p-level column in 4p runs |
+//! | `campaign` | a hunt as a list of tasks: several methods and groups in turn, resumable, in parts |
 //! | `circulants` | four rows for the array of Goethals and Seidel |
 //! | `effort` | the budget of a search, in steps |
 //! | `flats` | slices, unions of flats, that are an array of strength 3 together |
@@ -24,6 +25,7 @@
 
 pub mod beside;
 pub mod blocks;
+pub mod campaign;
 mod circulants;
 mod clique;
 mod effort;

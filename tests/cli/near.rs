@@ -55,7 +55,7 @@ fn runs_to_keep() {
     )
     .unwrap();
     assert_eq!((&document["verdict"], &document["kept"]), (&"proved-smallest".into(), &1.into()));
-    assert_eq!(document["certificate"]["strength"], 2);
+    assert_eq!(document["certificate"]["strength"], 3, "all combinations once");
     assert_eq!(document["array"][0], serde_json::json!([1, 1, 2]));
 }
 

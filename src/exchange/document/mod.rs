@@ -8,6 +8,7 @@
 //! | [`RecheckDocument`] | `recheck --json` |
 //! | [`FloorDocument`] | `floor --json` |
 //! | [`CatalogDocument`] | `catalog --json` |
+//! | [`HuntDocument`] | `hunt --json` |
 //!
 //! They borrow what they print, so an array is never copied. Keys are stable; the JSON Schemas in
 //! the folder `schema/` are generated from these types.
@@ -15,6 +16,7 @@
 mod catalog;
 mod certify;
 mod floor;
+mod hunt;
 mod near;
 mod recheck;
 mod seek;
@@ -22,6 +24,7 @@ mod seek;
 pub use catalog::CatalogDocument;
 pub use certify::{CertifyDocument, NamedWitness};
 pub use floor::{BoundDocument, FloorDocument};
+pub use hunt::{BestPart, FindPart, HuntDocument, HuntVerdict};
 pub use near::{
     CorrelationDocument, CriteriaDocument, EfficiencyDocument, NearDocument, NearVerdict, NextDocument,
     PairDocument,

@@ -1,12 +1,13 @@
 //! The next column, solved for.
 
-use super::{Column, Setting};
+use super::{Setting, Test};
+use crate::hunt::effort::Effort;
 use crate::hunt::random::Random;
 
-/// Backtracking over the orbits for one column orthogonal to all chosen ones.
+/// Backtracking over the orbits for one column orthogonal to all tests.
 pub(super) struct Solver<'a> {
     setting: &'a Setting,
-    chosen: &'a [Column],
+    chosen: &'a [Test],
     s: u16,
     /// For each chosen column how often each pair of levels may occur; `None` if it cannot be even.
     limits: Option<Vec<u16>>,
@@ -19,13 +20,13 @@ impl<'a> Solver<'a> {
     /// A solution that needs more steps than this is given up.
     const STEPS: usize = 4000;
 
-    pub(super) fn new(setting: &'a Setting, chosen: &'a [Column], s: u16) -> Self {
+    pub(super) fn new(setting: &'a Setting, chosen: &'a [Test], s: u16) -> Self {
         let runs = setting.runs;
         let (mut offsets, mut size) = (Vec::new(), 0);
         let mut limits = Some(Vec::new());
         for c in chosen {
             offsets.push(size);
-            let pairs = usize::from(c.stored.levels) * usize::from(s);
+            let pairs = usize::from(c.levels) * usize::from(s);
             size += pairs;
             match &mut limits {
                 Some(l) if runs.is_multiple_of(pairs) => l.push((runs / pairs) as u16),
@@ -40,7 +41,12 @@ impl<'a> Solver<'a> {
         Self { setting, chosen, s, limits, offsets, counters: vec![0; size] }
     }
 
-    pub(super) fn solve(&mut self, shifts: &[u16], random: &mut Random) -> Option<Vec<u16>> {
+    pub(super) fn solve(
+        &mut self,
+        shifts: &[u16],
+        random: &mut Random,
+        effort: &mut Effort<'_>,
+    ) -> Option<Vec<u16>> {
         let limits = self.limits.clone()?;
         self.counters.fill(0);
         let (orbits, s) = (self.setting.orbits, usize::from(self.s));
@@ -52,6 +58,7 @@ impl<'a> Solver<'a> {
         let mut open: Vec<Vec<u16>> = vec![vec![0]];
         let mut base = vec![0u16; orbits];
         let mut steps = 0;
+        let cost = (self.setting.order * (1 + self.chosen.len())) as u64;
         let mut depth = 0;
         loop {
             let o = order[depth];
@@ -66,7 +73,7 @@ impl<'a> Solver<'a> {
                 }
                 Some(b) => {
                     steps += 1;
-                    if steps > Self::STEPS {
+                    if steps > Self::STEPS || !effort.spend(cost) {
                         return None;
                     }
                     base[o] = b;
