@@ -5,7 +5,7 @@ use super::seek::{self, Flags, Format};
 use super::{ExitCode, Failure, flags, input, words};
 use crate::array::Array;
 use crate::exchange::document::NearDocument;
-use crate::exchange::{ReadOptions, read_any};
+use crate::exchange::{ReadError, ReadOptions, read_any};
 use crate::hunt::near::{NearOutcome, NearPlan, NearRequest, near};
 use crate::seek::{Outcome, Request, Verdict};
 use crate::verify::{Certificate, MOST_PARAMETERS, Nearness};
@@ -63,8 +63,13 @@ pub(super) fn run(flags: &Flags, asked: Request, budget: u64, format: Format) ->
 /// The runs in a file, with the levels asked for.
 fn kept(file: &str, flags: &Flags, asked: &Request) -> Result<Array, Failure> {
     let options = ReadOptions { levels: Some(asked.mix.clone()), ..ReadOptions::default() };
-    let received =
-        read_any(&input::read(file)?, &options).map_err(|e| Failure::input(input::title(file), e))?;
+    let received = read_any(&input::read(file)?, &options).map_err(|e| match e {
+        ReadError::DeclaredFactors { declared, factors } => Failure::input(
+            input::title(file),
+            format!("the mix has {declared} factors and the file {factors}; keep runs of the same factors"),
+        ),
+        e => Failure::input(input::title(file), e),
+    })?;
     if !flags.quiet() {
         output::remark(&read_as(&received));
     }
@@ -92,8 +97,10 @@ fn account(plan: &NearPlan, exact: Option<(&Certificate, Verdict)>) -> String {
         lines.push(("missing", format!("factor {} has {s} levels and there are only {runs}", factor + 1)));
     }
     lines.push(("levels", levels(nearness)));
-    lines.push(("pair counts", pair_counts(nearness)));
-    lines.push(("correlation", correlation(nearness)));
+    if nearness.pairs > 0 {
+        lines.push(("pair counts", pair_counts(nearness)));
+        lines.push(("correlation", correlation(nearness)));
+    }
     lines.push(("D-efficiency", efficiency(nearness, &runs)));
     if request.strength > 2 {
         lines.push((
@@ -200,7 +207,7 @@ fn correlation(nearness: &Nearness) -> String {
         return "not worked out: too many runs and factors for it to be quick".into();
     };
     let Some(c) = &by_pairs.correlation else {
-        return "not worked out: one factor, more than 32 levels, or factors that do not vary".into();
+        return "not worked out: more than 32 levels, or factors that do not vary".into();
     };
     if c.squared == "0" {
         return "none between main effects of different factors".into();
