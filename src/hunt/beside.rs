@@ -16,7 +16,7 @@ use super::frame;
 use super::halves::Halves;
 use super::random::Random;
 use super::splits::{Move, Orbit, Split, orbit};
-use super::symmetric::{SymmetricHunt, attempts};
+use super::symmetric::{Motion, SymmetricHunt, attempts};
 use crate::construct::{OrbitColumn, orbit_array};
 
 /// The columns that come first.
@@ -32,7 +32,7 @@ pub enum Base {
         levels: Vec<u16>,
         /// How many coordinates of the frame are the group.
         coordinates: usize,
-        /// Whether the generators must move the levels, see [`SymmetricHunt::moving`].
+        /// Whether the generators must move the levels, see [`Motion::Every`].
         moving: bool,
     },
 }
@@ -216,10 +216,12 @@ impl<'a> Setting<'a> {
             strength: 2,
             group: group.to_vec(),
             fixed: vec![],
-            moving,
+            motion: if moving { Motion::Every } else { Motion::Any },
+            elementary: false,
             seed: self.request.seed ^ attempt.wrapping_mul(0x9FB2_1C65_1E98_DF25),
             attempts: 8,
             pool: 60,
+            exchanges: 0,
         };
         let found = attempts(&base, effort).filter(|f| f.complete)?;
         self.expand(group, &found.columns)

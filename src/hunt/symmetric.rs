@@ -14,8 +14,10 @@ use std::time::Instant;
 use rayon::prelude::*;
 
 use self::solver::Solver;
+use super::clique::Clique;
 use super::effort::Effort;
 use super::random::Random;
+use super::splits::{Orbit, Split};
 use crate::construct::OrbitColumn;
 
 /// The largest number of runs that is searched.
@@ -34,14 +36,33 @@ pub struct SymmetricHunt {
     pub group: Vec<u16>,
     /// Columns that must be in the array, in the symmetry of the group.
     pub fixed: Vec<OrbitColumn>,
-    /// Whether every generator must move the levels of a factor, where the levels allow it.
-    pub moving: bool,
+    /// How the group moves the levels.
+    pub motion: Motion,
+    /// Whether p^e levels are the vectors over Z_p, written in base p, and not the numbers modulo
+    /// p^e: another action of the group on them. The columns found then name the symbol of every
+    /// run, as for the trivial group.
+    pub elementary: bool,
     /// The seed of the random numbers.
     pub seed: u64,
     /// How many attempts are made at the most.
     pub attempts: u64,
     /// How many solutions are drawn for a kind of column before a clique is grown.
     pub pool: usize,
+    /// How many exchanges improve a clique of two- or three-level columns at strength 2; 0 for
+    /// greedy cliques.
+    pub exchanges: u64,
+}
+
+/// How the group moves the levels of the factors.
+#[derive(Clone, Copy, Debug, PartialEq, Eq)]
+pub enum Motion {
+    /// In any way.
+    Any,
+    /// Every generator moves them, where their number allows it.
+    Every,
+    /// For each number of levels and each attempt chosen at random: in any way, not at all, or with
+    /// as few elements as possible that do not move them.
+    Varied,
 }
 
 /// What a hunt came to.
@@ -170,6 +191,7 @@ struct Setting {
     elements: Vec<Vec<u32>>,
     /// The kinds of columns, most levels first, with their number.
     kinds: Vec<(u16, usize)>,
+    elementary: bool,
 }
 
 impl Setting {
@@ -203,7 +225,7 @@ impl Setting {
             })
             .collect();
         let (runs, order) = (hunt.runs as usize, order as usize);
-        Some(Self { runs, order, orbits: runs / order, elements, kinds })
+        Some(Self { runs, order, orbits: runs / order, elements, kinds, elementary: hunt.elementary })
     }
 
     fn attempt(&self, hunt: &SymmetricHunt, attempt: u64, effort: &mut Effort<'_>) -> Found {
@@ -239,13 +261,22 @@ impl Setting {
     ) -> bool {
         let mut missing = count;
         let mut pool: Vec<Column> = Vec::new();
-        let characters = self.characters(hunt, s);
+        let characters = self.characters(hunt, s, random);
         while missing > 0 {
             if pool.len() < missing {
                 self.draw(hunt.pool, &partial.tests, s, &characters, &mut pool, random, effort);
                 if pool.is_empty() || !effort.goes_on() {
                     return false;
                 }
+            }
+            if hunt.exchanges > 0 && hunt.strength == 2 && s <= 3 {
+                let chosen = self.exchange(&pool, s, missing, hunt.exchanges, random, effort);
+                missing -= chosen.len().min(missing);
+                for i in chosen {
+                    let tests = vec![pool[i].test.clone()];
+                    partial.push(pool[i].clone(), tests);
+                }
+                return missing == 0;
             }
             let mut choice: Option<(usize, Vec<Test>, usize)> = None;
             for _ in 0..12.min(pool.len()) {
@@ -264,6 +295,28 @@ impl Setting {
             missing -= 1;
         }
         true
+    }
+
+    /// A clique of at most `missing` columns of the pool, by exchanges.
+    fn exchange(
+        &self,
+        pool: &[Column],
+        s: u16,
+        missing: usize,
+        exchanges: u64,
+        random: &mut Random,
+        effort: &mut Effort<'_>,
+    ) -> Vec<usize> {
+        let split = |c: &Column| {
+            let second = if s == 3 { c.test.masks[1] } else { 0 };
+            vec![Split { masks: [c.test.masks[0], second], levels: s as u8 }]
+        };
+        let orbits: Vec<Orbit> = pool.iter().map(split).collect();
+        let wanted = if s == 2 { [missing, 0] } else { [0, missing] };
+        let mut chosen =
+            Clique { runs: self.runs as u32, pool: &orbits, wanted }.search(exchanges, random, effort);
+        chosen.truncate(missing);
+        chosen
     }
 
     /// Fills the pool with columns that pass all tests.
@@ -297,12 +350,12 @@ impl Setting {
     }
 
     /// The homomorphisms from the group to the translations of `s` levels.
-    fn characters(&self, hunt: &SymmetricHunt, s: u16) -> Vec<Vec<u16>> {
+    fn characters(&self, hunt: &SymmetricHunt, s: u16, random: &mut Random) -> Vec<Vec<u16>> {
         let mut all: Vec<Vec<u16>> = vec![Vec::new()];
         for &n in &hunt.group {
-            let mut steps: Vec<u16> =
-                (0..s).filter(|&x| (u32::from(x) * u32::from(n)).is_multiple_of(u32::from(s))).collect();
-            if hunt.moving && steps.len() > 1 {
+            let times = |x: u16| (0..n).fold(0, |sum, _| self.add(s, sum, x));
+            let mut steps: Vec<u16> = (0..s).filter(|&x| times(x) == 0).collect();
+            if hunt.motion == Motion::Every && steps.len() > 1 {
                 steps.remove(0);
             }
             all = all
@@ -310,12 +363,40 @@ impl Setting {
                 .flat_map(|c| steps.iter().map(|&x| c.iter().copied().chain([x]).collect()))
                 .collect();
         }
+        if hunt.motion == Motion::Varied {
+            let still = |c: &Vec<u16>| self.shifts(c, s).iter().filter(|&&x| x == 0).count();
+            match random.below(3) {
+                0 => {}
+                1 => all.truncate(1),
+                _ => {
+                    let least = all.iter().map(still).min().unwrap_or(0);
+                    all.retain(|c| still(c) == least);
+                }
+            }
+        }
         all
     }
 
-    fn shift(&self, shifts: &[u16], g: usize, s: u16) -> usize {
-        let sum: u32 = self.elements[g].iter().zip(shifts).map(|(e, &x)| e * u32::from(x)).sum();
-        (sum % u32::from(s)) as usize
+    /// The sum of two levels.
+    fn add(&self, s: u16, a: u16, b: u16) -> u16 {
+        let p = if self.elementary { prime_base(s) } else { s };
+        let (mut sum, mut weight, mut a, mut b) = (0, 1, a, b);
+        while weight < s {
+            sum += (a % p + b % p) % p * weight;
+            (a, b, weight) = (a / p, b / p, weight * p);
+        }
+        sum
+    }
+
+    /// For each element of the group what it adds to a level.
+    fn shifts(&self, shifts: &[u16], s: u16) -> Vec<u16> {
+        let along = |element: &Vec<u32>| {
+            element
+                .iter()
+                .zip(shifts)
+                .fold(0, |sum, (&times, &x)| (0..times).fold(sum, |sum, _| self.add(s, sum, x)))
+        };
+        self.elements.iter().map(along).collect()
     }
 
     /// `None` when the column does not fit the setting.
@@ -324,16 +405,33 @@ impl Setting {
         if stored.base.len() != self.orbits || s < 2 || stored.base.iter().any(|&b| b >= s) {
             return None;
         }
+        let shifts = self.shifts(&stored.shifts, s);
         let (mut masks, mut symbols) = (vec![0u128; usize::from(s)], vec![0u8; self.runs]);
         for (o, &b) in stored.base.iter().enumerate() {
-            for g in 0..self.order {
-                let symbol = (usize::from(b) + self.shift(&stored.shifts, g, s)) % usize::from(s);
-                masks[symbol] |= 1 << (o * self.order + g);
+            for (g, &shift) in shifts.iter().enumerate() {
+                let symbol = self.add(s, b, shift);
+                masks[usize::from(symbol)] |= 1 << (o * self.order + g);
                 symbols[o * self.order + g] = symbol as u8;
             }
         }
+        let stored = if self.elementary {
+            let base = symbols.iter().map(|&x| u16::from(x)).collect();
+            OrbitColumn { levels: s, shifts: Vec::new(), base }
+        } else {
+            stored
+        };
         Some(Column { stored, test: Test { levels: s, masks, symbols } })
     }
+}
+
+/// The prime of which `s` is a power, `s` itself when it is none.
+fn prime_base(s: u16) -> u16 {
+    let p = (2..=s).find(|p| s.is_multiple_of(*p)).unwrap_or(s);
+    let mut rest = s;
+    while rest.is_multiple_of(p) && rest > 1 {
+        rest /= p;
+    }
+    if rest == 1 { p } else { s }
 }
 
 /// The masks in an order that does not depend on the names of the levels.
@@ -364,10 +462,12 @@ mod tests {
             strength: 2,
             group: group.to_vec(),
             fixed: vec![],
-            moving: false,
+            motion: Motion::Any,
+            elementary: false,
             seed: 1,
             attempts: 400,
             pool: 200,
+            exchanges: 0,
         };
         let found = hunt(&request, None).unwrap();
         assert_eq!(hunt(&request, None).unwrap(), found, "deterministic");
@@ -392,10 +492,12 @@ mod tests {
             strength: 2,
             group: group.to_vec(),
             fixed: vec![],
-            moving: false,
+            motion: Motion::Any,
+            elementary: false,
             seed: 1,
             attempts: 4,
             pool: 10,
+            exchanges: 0,
         };
         assert!(hunt(&request(12, &[5], &[]), None).is_none());
         assert!(hunt(&request(12, &[2], &[5]), None).is_none());

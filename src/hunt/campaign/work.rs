@@ -12,7 +12,7 @@ use crate::hunt::blocks::{BlockSearch, blocks};
 use crate::hunt::effort::Effort;
 use crate::hunt::random::Random;
 use crate::hunt::slices;
-use crate::hunt::symmetric::{SymmetricHunt, attempts};
+use crate::hunt::symmetric::{Motion, SymmetricHunt, attempts};
 use crate::mix::{Mix, counts_of};
 
 /// Raised whenever a task with the same number does something else, so that no state of an older
@@ -28,7 +28,7 @@ const DOUBLINGS: u64 = 9;
 #[derive(Clone, Debug)]
 pub(super) enum Strategy {
     /// Solve for column after column under a group.
-    Solve { group: Vec<u16>, moving: bool },
+    Solve { group: Vec<u16>, motion: Motion, elementary: bool },
     /// Columns of two and three levels beside a base, the group permuting columns.
     Beside { request: BesideHunt, symmetry: String },
     /// Vectors of block types beside one p-level column.
@@ -71,19 +71,23 @@ impl Strategy {
 
     fn run(&self, request: &HuntRequest, seed: u64, round: u64, effort: &mut Effort<'_>) -> Work {
         let (group, columns) = match self {
-            Self::Solve { group, moving } => {
+            Self::Solve { group, motion, elementary } => {
                 let hunt = SymmetricHunt {
                     runs: request.runs,
                     levels: request.mix.levels().to_vec(),
                     strength: request.strength,
                     group: group.clone(),
                     fixed: Vec::new(),
-                    moving: *moving,
+                    motion: *motion,
+                    elementary: *elementary,
                     seed,
                     attempts: u64::MAX,
-                    pool: [40, 100, 200, 300, 500][round.min(4) as usize],
+                    pool: [40, 100, 200, 300, 500, 800, 1200, 1600][round.min(7) as usize],
+                    // Every second round the cliques are worked on.
+                    exchanges: if round % 2 == 1 { 400 } else { 0 },
                 };
-                (group.clone(), attempts(&hunt, effort).map(|f| f.columns))
+                let stored = if *elementary { Vec::new() } else { group.clone() };
+                (stored, attempts(&hunt, effort).map(|f| f.columns))
             }
             Self::Beside { request: beside, .. } => {
                 // Some of the columns first, then all others anew: every second round.
@@ -162,17 +166,19 @@ fn columns_of(array: &crate::array::Array) -> Vec<OrbitColumn> {
 /// The strategies of a request, cheapest first.
 pub(super) fn strategies(request: &HuntRequest) -> Vec<Strategy> {
     let mut list = Vec::new();
-    match &request.symmetry {
-        Symmetry::Group(group) => {
-            list.push(Strategy::Solve { group: group.clone(), moving: false });
-            if !group.is_empty() {
-                list.push(Strategy::Solve { group: group.clone(), moving: true });
-            }
-        }
-        Symmetry::Auto => {
-            list.extend(
-                groups(request.runs).into_iter().map(|group| Strategy::Solve { group, moving: false }),
-            );
+    let groups = match &request.symmetry {
+        Symmetry::Group(group) => vec![group.clone()],
+        Symmetry::Auto => groups(request.runs),
+    };
+    for group in groups {
+        let solve = |motion, elementary| Strategy::Solve { group: group.clone(), motion, elementary };
+        list.push(solve(Motion::Any, false));
+        // Vectors of levels differ from numbers where a group acts on prime powers.
+        let powers = |s: u16| group.iter().any(|&n| s > n && is_power(s, n));
+        if group.len() > 1 {
+            list.push(solve(Motion::Varied, request.mix.levels().iter().any(|&s| powers(s))));
+        } else if !group.is_empty() && request.symmetry != Symmetry::Auto {
+            list.push(solve(Motion::Varied, false));
         }
     }
     let free = |s: &Strategy| match &request.symmetry {
@@ -186,6 +192,14 @@ pub(super) fn strategies(request: &HuntRequest) -> Vec<Strategy> {
         list.extend(slice_strategy(request).into_iter().filter(free));
     }
     list
+}
+
+/// Whether s = n^e.
+fn is_power(mut s: u16, n: u16) -> bool {
+    while n > 1 && s > 1 && s.is_multiple_of(n) {
+        s /= n;
+    }
+    s == 1
 }
 
 /// The groups that are tried: those that act freely on the runs, the trivial one first.

@@ -50,8 +50,11 @@ impl<'a> Solver<'a> {
         let limits = self.limits.clone()?;
         self.counters.fill(0);
         let (orbits, s) = (self.setting.orbits, usize::from(self.s));
-        let shift: Vec<usize> =
-            (0..self.setting.order).map(|g| self.setting.shift(shifts, g, self.s)).collect();
+        // What each element of the group makes of each symbol.
+        let shift = self.setting.shifts(shifts, self.s);
+        let images: Vec<Vec<usize>> = (0..self.s)
+            .map(|b| shift.iter().map(|&x| usize::from(self.setting.add(self.s, b, x))).collect())
+            .collect();
         let mut order: Vec<usize> = (0..orbits).collect();
         random.shuffle(&mut order);
         // The untried symbols of each orbit on the way, and the one in place.
@@ -69,7 +72,7 @@ impl<'a> Solver<'a> {
                         return None;
                     }
                     depth -= 1;
-                    self.count(order[depth], base[order[depth]], &shift, false);
+                    self.count(order[depth], &images[usize::from(base[order[depth]])], false);
                 }
                 Some(b) => {
                     steps += 1;
@@ -77,9 +80,9 @@ impl<'a> Solver<'a> {
                         return None;
                     }
                     base[o] = b;
-                    self.count(o, b, &shift, true);
-                    if !self.within(o, b, &shift, &limits) {
-                        self.count(o, b, &shift, false);
+                    self.count(o, &images[usize::from(b)], true);
+                    if !self.within(o, &images[usize::from(b)], &limits) {
+                        self.count(o, &images[usize::from(b)], false);
                         continue;
                     }
                     depth += 1;
@@ -94,11 +97,10 @@ impl<'a> Solver<'a> {
         }
     }
 
-    /// Puts orbit `o` with symbol `b` into the counters or takes it out.
-    fn count(&mut self, o: usize, b: u16, shift: &[usize], into: bool) {
+    /// Puts orbit `o` with the symbols of its runs into the counters or takes it out.
+    fn count(&mut self, o: usize, symbols: &[usize], into: bool) {
         let s = usize::from(self.s);
-        for (g, &x) in shift.iter().enumerate() {
-            let symbol = (usize::from(b) + x) % s;
+        for (g, &symbol) in symbols.iter().enumerate() {
             let run = o * self.setting.order + g;
             for (c, &offset) in self.chosen.iter().zip(&self.offsets) {
                 let at = offset + usize::from(c.symbols[run]) * s + symbol;
@@ -110,10 +112,9 @@ impl<'a> Solver<'a> {
     }
 
     /// Whether the counters that orbit `o` touches are within their limits.
-    fn within(&self, o: usize, b: u16, shift: &[usize], limits: &[u16]) -> bool {
+    fn within(&self, o: usize, symbols: &[usize], limits: &[u16]) -> bool {
         let s = usize::from(self.s);
-        shift.iter().enumerate().all(|(g, &x)| {
-            let symbol = (usize::from(b) + x) % s;
+        symbols.iter().enumerate().all(|(g, &symbol)| {
             let run = o * self.setting.order + g;
             let alone = self.chosen.len();
             self.counters[self.offsets[alone] + symbol] <= limits[alone]
