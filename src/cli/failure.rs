@@ -1,5 +1,6 @@
 use crate::floor::FloorError;
 use crate::hunt::campaign::{HuntError, RunError};
+use crate::hunt::near::NearError;
 use crate::seek::SeekError;
 use crate::verify::JudgeError;
 
@@ -69,6 +70,17 @@ impl From<JudgeError> for Failure {
         match e {
             JudgeError::Strength { .. } => Self::usage(e),
             e @ JudgeError::Disagreement { .. } => Self::stopped(e),
+        }
+    }
+}
+
+impl From<NearError> for Failure {
+    fn from(e: NearError) -> Self {
+        match e {
+            NearError::Seek(e) => e.into(),
+            NearError::Judge(e) => e.into(),
+            NearError::TooLarge { .. } | NearError::Array(_) => Self::stopped(e),
+            e => Self::usage(e),
         }
     }
 }

@@ -7,6 +7,7 @@
 //! | `failure` | why a command gave up, with its exit code |
 //! | `flags` | flags that several commands share |
 //! | `input`, `output` | files and the standard streams; output files appear whole or not at all |
+//! | `near` | `seek --budget`: the nearest plan and its account |
 //! | `progress` | the sign of life on a terminal |
 //! | `words` | tables and phrases that several commands print |
 //!
@@ -22,6 +23,7 @@ mod flags;
 mod floor;
 mod hunt;
 mod input;
+mod near;
 mod output;
 mod progress;
 mod recheck;

@@ -11,6 +11,7 @@
 //! | `extend` | further columns for a given array, or the proof that there are none |
 //! | `flats` | slices, unions of flats, that are an array of strength 3 together |
 //! | `latin` | quasi-difference matrices and V vectors |
+//! | `near` | plans for a budget that no array fits |
 //! | `quadratics` | difference schemes over Z3 in blocks of order 3 |
 //! | `schemes` | difference schemes with a prescribed symmetry |
 //! | `slices` | slices of 16 runs from Hadamard matrices, an array of strength 3 together |
@@ -36,6 +37,7 @@ pub mod flats;
 mod frame;
 mod halves;
 pub mod latin;
+pub mod near;
 mod quadratics;
 mod random;
 mod schemes;

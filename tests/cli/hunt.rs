@@ -186,7 +186,7 @@ fn riding_along() {
     make("2^5", "eight.csv");
     bench.put(
         "square.csv",
-        "oven,shelf,alloy\nA,p,x\n0,1,b\n0,2,c\n1,0,b\n1,1,c\n1,2,a\n2,0,c\n2,1,a\n2,2,b\n",
+        "oven,shelf,alloy\nA,p,x\nA,q,y\nA,r,z\nB,p,y\nB,q,z\nB,r,x\nC,p,z\nC,q,x\nC,r,y\n",
     );
     assert_snapshot!("extend_none", bench.show(&["hunt", "--from", "twelve.csv"]));
     assert_snapshot!("extend_some", bench.show(&["hunt", "--from", "eight.csv"]));

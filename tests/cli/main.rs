@@ -10,4 +10,5 @@ mod bench;
 mod commands;
 mod files;
 mod hunt;
+mod near;
 mod schema;

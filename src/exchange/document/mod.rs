@@ -3,6 +3,7 @@
 //! | type | printed by |
 //! | --- | --- |
 //! | [`SeekDocument`] | `seek --json`, `seek --batch` |
+//! | [`NearDocument`] | `seek --budget --json`, when no exact array fits |
 //! | [`CertifyDocument`] | `certify --json` |
 //! | [`RecheckDocument`] | `recheck --json` |
 //! | [`FloorDocument`] | `floor --json` |
@@ -18,6 +19,7 @@ mod certify;
 mod extend;
 mod floor;
 mod hunt;
+mod near;
 mod recheck;
 mod seek;
 
@@ -26,6 +28,10 @@ pub use certify::{CertifyDocument, NamedWitness};
 pub use extend::{ExtendDocument, ExtendVerdict, KindPart, KindStanding};
 pub use floor::{BoundDocument, FloorDocument};
 pub use hunt::{BestPart, FindPart, HuntDocument, HuntVerdict};
+pub use near::{
+    CorrelationDocument, CriteriaDocument, EfficiencyDocument, NearDocument, NearVerdict, NextDocument,
+    PairDocument,
+};
 pub use recheck::{RecheckDocument, RecipeCheck};
 pub use seek::{
     ErrorDocument, FloorPart, FoundDocument, NothingDocument, NothingVerdict, Rows, SeekDocument,
