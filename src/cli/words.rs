@@ -1,4 +1,4 @@
-use crate::floor::{Bound, Proof};
+use crate::floor::{Bound, Exclusion, Proof};
 use crate::verify::{Certificate, Engine, StrengthClaim};
 
 /// What is to be said beside every plan.
@@ -44,8 +44,9 @@ pub(super) fn labelled(lines: &[(&str, String)]) -> String {
 pub(super) fn reason(proof: &Proof) -> String {
     let divisor = proof.divisibility.divisor;
     let multiple = if divisor == 1 { String::new() } else { format!("; multiple of {divisor}") };
+    let excluded = excluded(proof);
     let rests = match proof.bound {
-        Bound::Divisibility => return format!("the number of runs is a multiple of {divisor}"),
+        Bound::Divisibility => return format!("the number of runs is a multiple of {divisor}{excluded}"),
         Bound::Rao { strength, aside: None, .. } => format!("degrees of freedom at strength {strength}"),
         Bound::Rao { strength, aside: Some(s), .. } => {
             format!("degrees of freedom at strength {strength}, one factor of {s} levels set aside")
@@ -56,13 +57,27 @@ pub(super) fn reason(proof: &Proof) -> String {
         Bound::Bush { levels, factors, .. } => {
             format!("the {} of {levels} levels at index 1", count(factors, "factor"))
         }
+        Bound::LinearProgram { ref weights, .. } => {
+            format!("a certificate of {}", count(weights.terms.len() as u64, "weight"))
+        }
     };
-    format!("{rests}: at least {}{multiple}", proof.bound.least())
+    format!("{rests}: at least {}{multiple}{excluded}", proof.bound.least())
+}
+
+/// `; not 12 (four-runs-per-level), not 24 (…)`: what the exclusions of a proof rule out.
+fn excluded(proof: &Proof) -> String {
+    const SHOWN: usize = 4;
+    let each = |e: &Exclusion| format!("not {} ({})", e.runs, e.reason.name());
+    match proof.exclusions.len() {
+        0 => String::new(),
+        n if n <= SHOWN => format!("; {}", proof.exclusions.iter().map(each).collect::<Vec<_>>().join(", ")),
+        n => format!("; not {} to {}, each ruled out by itself", proof.exclusions[0].runs, proof.exclusions[n - 1].runs),
+    }
 }
 
 /// The floor in one phrase: runs, name of the bound, what it rests on.
 pub(super) fn floor(proof: &Proof) -> String {
-    format!("{} ({}: {})", count(proof.runs, "run"), proof.bound.name(), reason(proof))
+    format!("{} ({}: {})", count(proof.runs, "run"), proof.name(), reason(proof))
 }
 
 /// The strength a certificate states.

@@ -11,6 +11,7 @@ pub mod proof;
 
 mod divisibility;
 mod effort;
+mod linear_program;
 mod pure;
 mod rao;
 
@@ -19,7 +20,8 @@ use thiserror::Error;
 use crate::mix::Mix;
 pub use divisibility::divisibility;
 pub use effort::Effort;
-pub use proof::{Bound, Proof, ProofError};
+pub use linear_program::{linear_program, parity};
+pub use proof::{Bound, Exclusion, Proof, ProofError, Reason, Step, Subject};
 pub use pure::{bose_bush, bush};
 pub use rao::rao;
 
