@@ -11,19 +11,23 @@ pub mod proof;
 
 mod divisibility;
 mod effort;
+mod exclude;
 mod linear_program;
 mod pure;
 mod rao;
+mod strengthen;
 
 use thiserror::Error;
 
 use crate::mix::Mix;
 pub use divisibility::divisibility;
 pub use effort::Effort;
+pub use exclude::exclude;
 pub use linear_program::{linear_program, parity};
 pub use proof::{Bound, Exclusion, Proof, ProofError, Reason, Step, Subject};
 pub use pure::{bose_bush, bush};
 pub use rao::rao;
+pub use strengthen::{Below, QUICK, Strengthened, strengthen};
 
 /// Why no floor can be stated.
 #[derive(Clone, Copy, Debug, PartialEq, Eq, Error)]
