@@ -2,7 +2,7 @@
 
 use super::linear_program::parity;
 use super::proof::{Bound, Exclusion, Reason, Step, Subject, block_limit, eight_runs_allow};
-use super::{Effort, bose_bush, bush, divisibility, rao};
+use super::{Effort, bose_bush, bush, confirmed, divisibility, rao};
 use crate::mix::Mix;
 
 /// A reason why no array for `mix` at `strength` has exactly `runs` runs, the cheapest kind first;
@@ -73,7 +73,7 @@ impl Path {
     /// Takes all the steps if the reason holds at their end.
     fn follow(&mut self, steps: &[Step], reason: &Reason) -> bool {
         let (depth, before) = (self.steps.len(), self.at.clone());
-        if steps.iter().all(|s| self.step(s.clone())) && reason.check(&self.at).is_ok() {
+        if steps.iter().all(|s| self.step(s.clone())) && confirmed(reason, &self.at) {
             return true;
         }
         self.steps.truncate(depth);

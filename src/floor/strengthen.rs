@@ -3,7 +3,7 @@
 use super::linear_program::linear_program;
 use super::{Effort, FloorError, Proof, exclude};
 
-/// What the default effort of [`strengthen`] is: well under a tenth of a second.
+/// The effort that leaves [`strengthen`] well under a tenth of a second.
 pub const QUICK: u64 = 20_000_000;
 
 /// No more than this many numbers of runs are looked at one by one.
@@ -27,44 +27,53 @@ pub struct Strengthened {
     pub below: Vec<Below>,
 }
 
-/// Makes a floor stronger where an answer of `answer` runs is above it: by the linear program,
-/// then by excluding single numbers of runs from the floor on; and says of every multiple of the
-/// divisor below the answer whether it is excluded.
+/// Makes a floor stronger where `answer` runs are above it: by the linear program, then by
+/// excluding single numbers of runs from the floor on, as far as that goes.
 ///
 /// # Errors
 /// [`FloorError::TooLarge`] when a number does not fit 64 bits.
-pub fn strengthen(proof: Proof, answer: u64, effort: &mut Effort<'_>) -> Result<Strengthened, FloorError> {
+pub fn raise(proof: Proof, answer: u64, effort: &mut Effort<'_>) -> Result<Proof, FloorError> {
     let mut proof = proof;
-    let step = proof.divisibility.divisor.max(1);
     if proof.runs < answer && proof.exclusions.is_empty() {
+        let step = proof.divisibility.divisor;
         let better = linear_program(&proof.mix, proof.strength, step, effort)
             .map(|bound| Proof::new(proof.mix.clone(), proof.strength, proof.divisibility.clone(), bound))
             .transpose()?
-            .filter(|p| p.runs > proof.runs && p.runs <= answer);
+            .filter(|p| p.runs > proof.runs);
         proof = better.unwrap_or(proof);
     }
-    let bound = proof.bound.name();
-    let base = proof.exclusions.first().map_or(proof.runs, |e| e.runs);
-    let first = (answer.saturating_sub(1) / step).saturating_sub(MOST as u64 - 1).max(1) * step;
-    let known: Vec<Below> = std::iter::successors(Some(first), |n| n.checked_add(step))
-        .take_while(|&n| n < answer)
-        .filter(|&n| n < base)
-        .map(|runs| Below { runs, excluded: Some(bound) })
-        .collect();
-    let mut below = known;
-    below.extend(proof.exclusions.iter().map(|e| Below { runs: e.runs, excluded: Some(e.reason.name()) }));
-    let mut gap = false;
-    let mut runs = proof.runs;
-    while runs < answer && below.len() < 2 * MOST {
-        let exclusion = exclude(&proof.mix, proof.strength, runs, effort);
-        below.push(Below { runs, excluded: exclusion.as_ref().map(|e| e.reason.name()) });
-        match exclusion {
-            Some(exclusion) if !gap => proof = proof.excluding(exclusion)?,
-            Some(_) => {}
-            None => gap = true,
-        }
-        let Some(next) = runs.checked_add(step) else { break };
-        runs = next;
+    while proof.runs < answer && proof.exclusions.len() < MOST {
+        let Some(exclusion) = exclude(&proof.mix, proof.strength, proof.runs, effort) else { break };
+        proof = proof.excluding(exclusion)?;
     }
+    Ok(proof)
+}
+
+/// [`raise`], and for every multiple of the divisor below the answer whether it is excluded.
+///
+/// # Errors
+/// As [`raise`].
+pub fn strengthen(proof: Proof, answer: u64, effort: &mut Effort<'_>) -> Result<Strengthened, FloorError> {
+    let proof = raise(proof, answer, effort)?;
+    let below = multiples(proof.divisibility.divisor.max(1), answer)
+        .map(|runs| Below { runs, excluded: excluded(&proof, runs, effort) })
+        .collect();
     Ok(Strengthened { proof, below })
+}
+
+/// The last multiples of `step` below `answer`, ascending.
+fn multiples(step: u64, answer: u64) -> impl Iterator<Item = u64> {
+    let last = answer.saturating_sub(1) / step;
+    (last.saturating_sub(MOST as u64 - 1).max(1)..=last).map(move |n| n * step)
+}
+
+/// The name of what rules a number of runs out: the proof, or a reason found for it.
+fn excluded(proof: &Proof, runs: u64, effort: &mut Effort<'_>) -> Option<&'static str> {
+    if let Some(exclusion) = proof.exclusions.iter().find(|e| e.runs == runs) {
+        return Some(exclusion.reason.name());
+    }
+    if runs < proof.runs {
+        return Some(proof.bound.name());
+    }
+    exclude(&proof.mix, proof.strength, runs, effort).map(|e| e.reason.name())
 }

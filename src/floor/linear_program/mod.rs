@@ -13,7 +13,7 @@ mod space;
 mod tests;
 
 use super::proof::{Bound, Subject, Weights, parity_applies, parity_bounds};
-use super::{Effort, Reason};
+use super::{Effort, Reason, confirmed};
 use crate::mix::Mix;
 use round::round;
 use solver::{Row, minimise};
@@ -101,10 +101,10 @@ pub fn parity(about: &Subject, effort: &mut Effort<'_>) -> Option<Reason> {
     }
     let question = Question::new(&counts, about.strength, Some(about.runs))?;
     let weights = solve(&question, about.runs as f64 + 1e-3, effort)?;
-    let holds = |w: &Weights| Reason::Parity { weights: w.clone() }.check(about).is_ok();
+    let holds = |w: &Weights| confirmed(&Reason::Parity { weights: w.clone() }, about);
     let weights = round(&question, &weights, holds)?;
     let reason = Reason::Parity { weights };
-    reason.check(about).ok().map(|()| reason)
+    confirmed(&reason, about).then_some(reason)
 }
 
 /// Weights whose value is optimal, above `enough`, or what the effort allowed.

@@ -1,7 +1,7 @@
 use num_integer::Integer;
 
 use super::error::{ExclusionError, ProofError};
-use super::exclusion::Exclusion;
+use super::exclusion::{Exclusion, Replay, no_replay};
 use super::subject::Subject;
 use super::theorem::{bose_bush_allows, bush_limit, rao_value};
 use super::{Bound, PROOF_VERSION, Proof, round_up};
@@ -12,6 +12,15 @@ impl Proof {
     /// # Errors
     /// The first rule that is broken.
     pub fn check(&self) -> Result<(), ProofError> {
+        self.check_with(&no_replay)
+    }
+
+    /// As [`Proof::check`], recorded searches made again by `replay`; without it a proof that rests
+    /// on one is not accepted.
+    ///
+    /// # Errors
+    /// The first rule that is broken.
+    pub fn check_with(&self, replay: &Replay<'_>) -> Result<(), ProofError> {
         if !(1..=PROOF_VERSION).contains(&self.version) || (self.version == 1 && !self.exclusions.is_empty()) {
             return Err(ProofError::Version(self.version));
         }
@@ -27,7 +36,7 @@ impl Proof {
         }
         let mut given = round_up(claimed, self.divisibility.divisor).ok_or(ProofError::TooLarge)?;
         for exclusion in &self.exclusions {
-            self.check_exclusion(exclusion, given)
+            self.check_exclusion(exclusion, given, replay)
                 .map_err(|why| ProofError::Exclusion { runs: exclusion.runs, why })?;
             given = given.checked_add(self.divisibility.divisor).ok_or(ProofError::TooLarge)?;
         }
@@ -38,11 +47,14 @@ impl Proof {
     }
 
     /// That `expected` runs, the next multiple of the divisor, are excluded.
-    fn check_exclusion(&self, exclusion: &Exclusion, expected: u64) -> Result<(), ExclusionError> {
-        if exclusion.runs != expected {
-            return Err(ExclusionError::Order { expected });
-        }
-        exclusion.check(&Subject { runs: expected, strength: self.strength, mix: self.mix.clone() })
+    fn check_exclusion(
+        &self,
+        exclusion: &Exclusion,
+        expected: u64,
+        replay: &Replay<'_>,
+    ) -> Result<(), ExclusionError> {
+        let request = Subject { runs: expected, strength: self.strength, mix: self.mix.clone() };
+        exclusion.check_with(&request, replay)
     }
 
     fn check_divisor(&self, counts: &[(u16, u64)]) -> Result<(), ProofError> {

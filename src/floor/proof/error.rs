@@ -79,6 +79,9 @@ pub enum ExclusionError {
     /// The certificate holds but does not reach the number of runs.
     #[error("it holds, but does not reach this number of runs")]
     Weak,
+    /// A recorded search was not made again, or gave something else.
+    #[error("the record of the search is not confirmed: {0}")]
+    Replay(String),
     /// The statement is not about this number of runs, strength or mix.
     #[error("the statement does not apply here")]
     Subject,

@@ -57,7 +57,16 @@ pub enum Reason {
         /// The levels.
         levels: u16,
     },
+    /// A search that went through all arrays column by column: its record, which only making the
+    /// search again can confirm.
+    Exhaustion {
+        /// The record, read by whoever makes the search again.
+        record: serde_json::Value,
+    },
 }
+
+/// Makes a recorded search again: whether it shows that the subject has no array.
+pub type Replay<'a> = dyn Fn(&serde_json::Value, &Subject) -> Result<(), String> + 'a;
 
 impl Reason {
     /// The name of the reason, as in the JSON form; of a bound the bound's.
@@ -69,14 +78,15 @@ impl Reason {
             Self::Parity { .. } => "parity",
             Self::FourRunsPerLevel { .. } => "four-runs-per-level",
             Self::EightRunsPerLevel { .. } => "eight-runs-per-level",
+            Self::Exhaustion { .. } => "exhaustion",
         }
     }
 
-    /// Checks that the subject has no array.
+    /// Checks that the subject has no array; recorded searches are made again by `replay`.
     ///
     /// # Errors
     /// The first condition that does not hold.
-    pub fn check(&self, about: &Subject) -> Result<(), ExclusionError> {
+    pub fn check(&self, about: &Subject, replay: &Replay<'_>) -> Result<(), ExclusionError> {
         let counts = about.counts();
         let factors = |levels: u16| counts.iter().find(|c| c.0 == levels).map_or(0, |c| c.1);
         let demand = |is: bool| if is { Ok(()) } else { Err(ExclusionError::Subject) };
@@ -117,6 +127,7 @@ impl Reason {
                 demand(about.strength == 3 && about.runs == runs && factors(*levels) > 0)?;
                 if eight_runs_allow(*levels, factors(2)) { Err(ExclusionError::Weak) } else { Ok(()) }
             }
+            Self::Exhaustion { record } => replay(record, about).map_err(ExclusionError::Replay),
         }
     }
 }
@@ -137,8 +148,19 @@ impl Exclusion {
     /// Checks that the request has no array of exactly `self.runs` runs.
     ///
     /// # Errors
-    /// The first rule that is broken.
+    /// The first rule that is broken; [`ExclusionError::Replay`] for a recorded search.
     pub fn check(&self, request: &Subject) -> Result<(), ExclusionError> {
+        self.check_with(request, &no_replay)
+    }
+
+    /// As [`Exclusion::check`], recorded searches made again by `replay`.
+    ///
+    /// # Errors
+    /// The first rule that is broken.
+    pub fn check_with(&self, request: &Subject, replay: &Replay<'_>) -> Result<(), ExclusionError> {
+        if self.runs != request.runs {
+            return Err(ExclusionError::Order { expected: request.runs });
+        }
         let mut subject = request.clone();
         for (n, step) in self.steps.iter().enumerate() {
             subject = subject.after(step).ok_or(ExclusionError::Step(n + 1))?;
@@ -146,6 +168,11 @@ impl Exclusion {
         if !subject.same(&self.about) {
             return Err(ExclusionError::About(subject.to_string()));
         }
-        self.reason.check(&subject)
+        self.reason.check(&subject, replay)
     }
+}
+
+/// Accepts no recorded search.
+pub(super) fn no_replay(_: &serde_json::Value, _: &Subject) -> Result<(), String> {
+    Err("the search must be made again for this".into())
 }

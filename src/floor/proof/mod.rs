@@ -32,7 +32,7 @@ use crate::mix::Mix;
 pub use blocks::{block_limit, blocks_allow};
 pub use eight::eight_runs_allow;
 pub use error::{ExclusionError, ProofError};
-pub use exclusion::{Exclusion, Reason};
+pub use exclusion::{Exclusion, Reason, Replay};
 pub use krawtchouk::Krawtchouk;
 pub use parity::{parity_applies, parity_bounds};
 pub use program::{MAX_COST, MAX_FACTORS, MAX_TUPLES, Term, Weights};
@@ -173,6 +173,12 @@ impl Proof {
         self.runs = self.runs.checked_add(self.divisibility.divisor).ok_or(FloorError::TooLarge)?;
         self.exclusions.push(exclusion);
         Ok(self)
+    }
+
+    /// The least number of runs that is not ruled out, before it is rounded up.
+    #[must_use]
+    pub fn least(&self) -> u64 {
+        self.exclusions.last().map_or(self.bound.least(), |e| e.runs.saturating_add(1))
     }
 
     /// The name of what the number of runs rests on: the reason of the last exclusion, or the
