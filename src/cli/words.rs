@@ -1,4 +1,5 @@
-use crate::floor::{Bound, Exclusion, Proof};
+use crate::floor::{Below, Bound, Exclusion, Proof};
+use crate::seek::Answer;
 use crate::verify::{Certificate, Engine, StrengthClaim};
 
 /// What is to be said beside every plan.
@@ -8,6 +9,21 @@ pub(super) const CAUTION: &str = "the runs combine settings nobody may have run 
 /// `1 run`, `2 runs`.
 pub(super) fn count(n: u64, what: &str) -> String {
     if n == 1 { format!("1 {what}") } else { format!("{n} {what}s") }
+}
+
+/// `0.3 ms`, `1.2 s`.
+pub(super) fn time(time: std::time::Duration) -> String {
+    let seconds = time.as_secs_f64();
+    if seconds < 0.1 { format!("{:.1} ms", seconds * 1000.0) } else { format!("{seconds:.1} s") }
+}
+
+/// What is known about the numbers of runs below an answer.
+pub(super) fn below(answer: &Answer) -> String {
+    const SHOWN: usize = 8;
+    let each = |b: &Below| format!("{}: {}", b.runs, b.excluded.unwrap_or("not excluded"));
+    let skipped = answer.below.len().saturating_sub(SHOWN);
+    let shown: Vec<String> = answer.below.iter().skip(skipped).map(each).collect();
+    format!("{}{}", if skipped > 0 { "…, " } else { "" }, shown.join(", "))
 }
 
 /// An aligned table under a line of titles, two blanks between columns; columns of numbers to the
@@ -71,7 +87,11 @@ fn excluded(proof: &Proof) -> String {
     match proof.exclusions.len() {
         0 => String::new(),
         n if n <= SHOWN => format!("; {}", proof.exclusions.iter().map(each).collect::<Vec<_>>().join(", ")),
-        n => format!("; not {} to {}, each ruled out by itself", proof.exclusions[0].runs, proof.exclusions[n - 1].runs),
+        n => format!(
+            "; not {} to {}, each ruled out by itself",
+            proof.exclusions[0].runs,
+            proof.exclusions[n - 1].runs
+        ),
     }
 }
 

@@ -30,10 +30,10 @@ pub use divisibility::divisibility;
 pub use effort::Effort;
 pub use exclude::exclude;
 pub use linear_program::{linear_program, parity};
+pub use most::{Most, most};
 pub use proof::{Bound, Exclusion, Proof, ProofError, Reason, Step, Subject};
 pub use pure::{bose_bush, bush};
 pub use rao::rao;
-pub use most::{Most, most};
 pub use strengthen::{Below, QUICK, Strengthened, raise, strengthen};
 
 /// Why no floor can be stated.

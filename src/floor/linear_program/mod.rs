@@ -161,7 +161,12 @@ fn worst(len: usize, known: &[usize], by: impl Fn(usize) -> f64) -> Vec<usize> {
 }
 
 /// The weights that are best for these rows and columns, g = 1.
-fn weights(question: &Question<'_>, rows: &[usize], columns: &[usize], limit: f64) -> Option<Vec<(usize, f64)>> {
+fn weights(
+    question: &Question<'_>,
+    rows: &[usize],
+    columns: &[usize],
+    limit: f64,
+) -> Option<Vec<(usize, f64)>> {
     let costs: Vec<f64> = columns.iter().map(|&j| 1.0 - question.least(j)).collect();
     let limits: Vec<(f64, f64)> =
         columns.iter().map(|&j| (if question.free(j) { -limit } else { 0.0 }, limit)).collect();
@@ -179,7 +184,12 @@ fn weights(question: &Question<'_>, rows: &[usize], columns: &[usize], limit: f6
 
 /// The numbers of pairs A_i that are best for these rows and columns: the program whose dual
 /// [`weights`] solves.
-fn pairs(question: &Question<'_>, rows: &[usize], columns: &[usize], limit: f64) -> Option<Vec<(usize, f64)>> {
+fn pairs(
+    question: &Question<'_>,
+    rows: &[usize],
+    columns: &[usize],
+    limit: f64,
+) -> Option<Vec<(usize, f64)>> {
     let (m, n) = (rows.len(), columns.len());
     // After the A_i what a column falls short, after that what it has too much.
     let costs: Vec<f64> = (0..m + 2 * n).map(|v| if v < m { 1.0 } else { limit }).collect();

@@ -1,6 +1,6 @@
 use super::*;
-use crate::floor::{Effort, divisibility};
 use crate::floor::proof::Proof;
+use crate::floor::{Effort, divisibility};
 
 fn runs(mix: &str, t: u32) -> u64 {
     let mix: Mix = mix.parse().unwrap();

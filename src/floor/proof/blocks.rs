@@ -35,13 +35,21 @@ pub fn blocks_allow(p: u16, k: u64) -> Option<bool> {
     let first = vec![1i8; p];
     let mut steps = LIMIT;
     for m in 0..=p / 2 {
-        let second: Vec<i8> = (0..p).map(|i| if i < m { 1 } else if i < 2 * m { -1 } else { 2 }).collect();
+        let second: Vec<i8> = (0..p)
+            .map(|i| {
+                if i < m {
+                    1
+                } else if i < 2 * m {
+                    -1
+                } else {
+                    2
+                }
+            })
+            .collect();
         let others: Vec<Vec<i8>> =
             vectors(p).filter(|v| orthogonal(v, &first) && orthogonal(v, &second)).collect();
-        let near: Vec<Vec<u64>> = others
-            .iter()
-            .map(|v| bits(others.len(), |n| orthogonal(v, &others[n])))
-            .collect();
+        let near: Vec<Vec<u64>> =
+            others.iter().map(|v| bits(others.len(), |n| orthogonal(v, &others[n]))).collect();
         let all = bits(others.len(), |_| true);
         if clique(&near, &all, k - 2, &mut steps)? {
             return Some(true);

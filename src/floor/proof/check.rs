@@ -21,7 +21,8 @@ impl Proof {
     /// # Errors
     /// The first rule that is broken.
     pub fn check_with(&self, replay: &Replay<'_>) -> Result<(), ProofError> {
-        if !(1..=PROOF_VERSION).contains(&self.version) || (self.version == 1 && !self.exclusions.is_empty()) {
+        if !(1..=PROOF_VERSION).contains(&self.version) || (self.version == 1 && !self.exclusions.is_empty())
+        {
             return Err(ProofError::Version(self.version));
         }
         let counts: Vec<(u16, u64)> = self.mix.counts().into_iter().map(|(s, k)| (s, k as u64)).collect();
@@ -84,8 +85,7 @@ impl Proof {
 /// What the theorem behind a bound gives for a mix and a strength.
 pub(super) fn theorem(bound: &Bound, counts: &[(u16, u64)], of_strength: u32) -> Result<u64, ProofError> {
     let pure = |levels: u16, factors: u64| {
-        if factors >= u64::from(of_strength) && counts.iter().any(|&(s, k)| s == levels && k >= factors)
-        {
+        if factors >= u64::from(of_strength) && counts.iter().any(|&(s, k)| s == levels && k >= factors) {
             Ok(())
         } else {
             Err(ProofError::Subject(format!("{factors} factors of {levels} levels")))
@@ -116,8 +116,7 @@ pub(super) fn theorem(bound: &Bound, counts: &[(u16, u64)], of_strength: u32) ->
         Bound::Bush { levels, factors, .. } => {
             pure(levels, factors)?;
             let power = u64::from(levels).checked_pow(of_strength).ok_or(ProofError::TooLarge)?;
-            let index =
-                if of_strength >= 2 && factors > bush_limit(levels, of_strength) { 2 } else { 1 };
+            let index = if of_strength >= 2 && factors > bush_limit(levels, of_strength) { 2 } else { 1 };
             power.checked_mul(index).ok_or(ProofError::TooLarge)
         }
         Bound::LinearProgram { ref weights, .. } => {

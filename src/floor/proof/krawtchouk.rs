@@ -62,7 +62,8 @@ mod tests {
                     let sum: i128 = (0..=j.min(x))
                         .filter(|h| j - h <= k - x)
                         .map(|h| {
-                            let size = binomial(x as i128, h as i128) * binomial((k - x) as i128, (j - h) as i128);
+                            let size =
+                                binomial(x as i128, h as i128) * binomial((k - x) as i128, (j - h) as i128);
                             let power = i128::from(s - 1).pow((j - h) as u32);
                             if h % 2 == 0 { size * power } else { -size * power }
                         })

@@ -72,10 +72,7 @@ fn each_rule_rejects() {
         claims(Bound::BoseBush { levels: 3, factors: 8, least: 28 }),
         ProofError::Least { claimed: 28, given: 27 }
     );
-    assert!(matches!(
-        claims(Bound::BoseBush { levels: 3, factors: 9, least: 27 }),
-        ProofError::Subject(_)
-    ));
+    assert!(matches!(claims(Bound::BoseBush { levels: 3, factors: 9, least: 27 }), ProofError::Subject(_)));
     assert!(matches!(claims(Bound::Bush { levels: 5, factors: 8, least: 50 }), ProofError::Subject(_)));
     assert_eq!(
         claims(Bound::Bush { levels: 3, factors: 4, least: 18 }),
@@ -85,15 +82,9 @@ fn each_rule_rejects() {
         claims(Bound::Rao { strength: 2, aside: None, least: 19 }),
         ProofError::Least { claimed: 19, given: 18 }
     );
-    assert!(matches!(
-        claims(Bound::Rao { strength: 3, aside: Some(2), least: 20 }),
-        ProofError::Subject(_)
-    ));
+    assert!(matches!(claims(Bound::Rao { strength: 3, aside: Some(2), least: 20 }), ProofError::Subject(_)));
     assert!(matches!(claims(Bound::Rao { strength: 1, aside: None, least: 2 }), ProofError::Subject(_)));
-    assert!(matches!(
-        claims(Bound::Rao { strength: 1, aside: Some(5), least: 5 }),
-        ProofError::Subject(_)
-    ));
+    assert!(matches!(claims(Bound::Rao { strength: 1, aside: Some(5), least: 5 }), ProofError::Subject(_)));
 }
 
 #[test]
