@@ -91,7 +91,7 @@ fn every_bound(mix: &Mix, strength: u32) -> Result<Vec<(Proof, Duration)>, Floor
     let mut effort = Effort::new(EFFORT, &late);
     let divisor = timed.first().map(|b| b.0.divisibility.clone());
     let at = Instant::now();
-    let program = divisor.and_then(|d| Some((linear_program(mix, strength, d.divisor, &mut effort)?, d)));
+    let program = divisor.and_then(|d| Some((linear_program(mix, strength, 1, &mut effort)?, d)));
     if let Some((bound, divisor)) = program {
         timed.push((Proof::new(mix.clone(), strength, divisor, bound)?, at.elapsed()));
     }
