@@ -1,6 +1,6 @@
 //! Finds reasons why no array has exactly so many runs.
 
-use super::linear_program::parity;
+use super::linear_program::{distances, parity};
 use super::proof::{Bound, Exclusion, Reason, Step, Subject, block_limit, eight_runs_allow};
 use super::{Effort, bose_bush, bush, confirmed, divisibility, rao};
 use crate::mix::Mix;
@@ -52,6 +52,9 @@ impl Path {
             }
         }
         if let Some(reason) = parity(&self.at, effort) {
+            return Some(reason);
+        }
+        if let Some(reason) = distances(&self.at, effort) {
             return Some(reason);
         }
         if self.at.strength < 3 {

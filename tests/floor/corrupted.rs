@@ -10,8 +10,16 @@ fn proofs() -> Vec<Proof> {
     let quick = || Effort::new(QUICK, &|| false);
     let mut all = Vec::new();
     for (text, strength) in [
-        ("3 2^5", 2), ("6 2^3", 2), ("5 2^9", 2), ("3 2^5", 3), ("4 6 2^3", 3), ("3^8", 2), ("2^11 3", 2),
-        ("14 2^3", 2), ("3^5", 3), ("2^12", 4),
+        ("3 2^5", 2),
+        ("6 2^3", 2),
+        ("5 2^9", 2),
+        ("3 2^5", 3),
+        ("4 6 2^3", 3),
+        ("3^8", 2),
+        ("2^11 3", 2),
+        ("14 2^3", 2),
+        ("3^5", 3),
+        ("2^12", 4),
     ] {
         let mix: Mix = text.parse().unwrap();
         all.push(raise(floor(&mix, strength).unwrap(), 200, &mut quick()).unwrap());

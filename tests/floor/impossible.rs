@@ -10,7 +10,7 @@ fn mix(text: &str) -> Mix {
 }
 
 /// The runs, the strength and the mix; the reason.
-const IMPOSSIBLE: [(u64, u32, &str, &str); 10] = [
+const IMPOSSIBLE: [(u64, u32, &str, &str); 11] = [
     (12, 2, "3 2^5", "four-runs-per-level"),
     (12, 2, "6 2^3", "parity"),
     (18, 2, "3^8", "bose-bush"),
@@ -21,6 +21,7 @@ const IMPOSSIBLE: [(u64, u32, &str, &str); 10] = [
     (40, 3, "5 2^7", "eight-runs-per-level"),
     (48, 3, "4 6 2^3", "parity"),
     (27, 3, "3^5", "bush"),
+    (81, 3, "3^13", "distances"),
 ];
 
 #[test]
@@ -31,7 +32,8 @@ fn proved_impossible() {
         let exclusion = exclude(&mix, strength, runs, &mut Effort::new(QUICK, &|| false)).unwrap();
         assert_eq!(exclusion.reason.name(), by, "{runs}: {text}");
         exclusion.check(&Subject { runs, strength, mix: mix.clone() }).unwrap();
-        let proof = raise(floor(&mix, strength).unwrap(), runs + 1, &mut Effort::new(QUICK, &|| false)).unwrap();
+        let proof =
+            raise(floor(&mix, strength).unwrap(), runs + 1, &mut Effort::new(QUICK, &|| false)).unwrap();
         assert!(proof.runs > runs, "{runs}: {text}");
         proof.check().unwrap();
     }
@@ -41,8 +43,16 @@ fn proved_impossible() {
 fn one_factor_less_exists() {
     let shelf = Shelf::new();
     let exist = [
-        (12, 2, "3 2^4"), (12, 2, "6 2^2"), (18, 2, "3^7"), (20, 2, "5 2^8"), (20, 2, "10 2^2"),
-        (28, 2, "14 2^2"), (24, 3, "3 2^4"), (40, 3, "5 2^6"), (48, 3, "4 6 2^2"), (27, 3, "3^4"),
+        (12, 2, "3 2^4"),
+        (12, 2, "6 2^2"),
+        (18, 2, "3^7"),
+        (20, 2, "5 2^8"),
+        (20, 2, "10 2^2"),
+        (28, 2, "14 2^2"),
+        (24, 3, "3 2^4"),
+        (40, 3, "5 2^6"),
+        (48, 3, "4 6 2^2"),
+        (27, 3, "3^4"),
     ];
     for (runs, strength, text) in exist {
         let request = Request::new(mix(text)).strength(strength);

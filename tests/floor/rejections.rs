@@ -41,10 +41,7 @@ fn exclusions_of_a_proof() {
     assert_eq!(broken(&|p| p.version = 1), ProofError::Version(1));
     assert_eq!(broken(&|p| p.runs = 36), ProofError::Runs { claimed: 36, given: 24 });
     assert_eq!(broken(&|p| p.exclusions.clear()), ProofError::Runs { claimed: 24, given: 12 });
-    assert_eq!(
-        broken(&|p| p.exclusions[0].runs = 24),
-        because(24, ExclusionError::Order { expected: 12 })
-    );
+    assert_eq!(broken(&|p| p.exclusions[0].runs = 24), because(24, ExclusionError::Order { expected: 12 }));
     let twice = |p: &mut Proof| p.exclusions.push(p.exclusions[0].clone());
     assert_eq!(broken(&twice), because(12, ExclusionError::Order { expected: 24 }));
     assert_eq!(
@@ -152,10 +149,7 @@ fn parity() {
     assert_eq!(judged(&request, Reason::Parity { weights: weak }), Err(ExclusionError::Weak));
     let mut wrong = weights;
     wrong.constant = 1;
-    assert!(matches!(
-        judged(&request, Reason::Parity { weights: wrong }),
-        Err(ExclusionError::Negative(_))
-    ));
+    assert!(matches!(judged(&request, Reason::Parity { weights: wrong }), Err(ExclusionError::Negative(_))));
 }
 
 #[test]

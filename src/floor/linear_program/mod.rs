@@ -6,6 +6,7 @@
 //!
 //! Reference: Delsarte 1973; Sloane & Stufken 1996.
 
+mod distances;
 mod round;
 mod solver;
 mod space;
@@ -15,6 +16,7 @@ mod tests;
 use super::proof::{Bound, Subject, Weights, parity_applies, parity_bounds};
 use super::{Effort, Reason, confirmed};
 use crate::mix::Mix;
+pub use distances::distances;
 use round::round;
 use solver::{Row, minimise};
 use space::Space;

@@ -2,7 +2,7 @@ use super::Question;
 use crate::floor::proof::{Term, Weights};
 
 /// The smallest scale from which on doubling has no sense: the weights no longer fit.
-const MAX_SCALE: f64 = (1u64 << 40) as f64;
+pub(super) const MAX_SCALE: f64 = (1u64 << 40) as f64;
 
 /// Integer weights near real ones: D·f_j rounded for D = 1, 5/4, 3/2, 7/4, 2, …, the constant what
 /// they need; the first that are `strong`, else the ones with the best bound.

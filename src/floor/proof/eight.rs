@@ -17,8 +17,68 @@
 /// in both cases it has at most two points, a contradiction.
 ///
 /// Reference: proved here; that OA(8, 2^k, 2) is unique up to the choice of points for k = 5, 6, 7
-/// is common knowledge [memory; the tests list all of them].
+/// is common knowledge [memory]; what is used of it is checked on all of them in the tests.
 #[must_use]
 pub fn eight_runs_allow(levels: u16, factors: u64) -> bool {
     levels.is_multiple_of(2) || factors < if levels == 3 { 5 } else { 7 }
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+
+    /// Calls `with` for every set of `wanted` more columns that are orthogonal to each other and to
+    /// the chosen ones, a column being the runs at level 1, run 0 at level 0.
+    fn arrays(from: u16, wanted: usize, chosen: &mut Vec<u16>, with: &mut impl FnMut(&[u16])) {
+        if wanted == 0 {
+            return with(chosen);
+        }
+        for column in (from..256).step_by(2).filter(|c| c.count_ones() == 4) {
+            if chosen.iter().all(|other| (other ^ column).count_ones() == 4) {
+                chosen.push(column);
+                arrays(column + 2, wanted - 1, chosen, with);
+                chosen.pop();
+            }
+        }
+    }
+
+    /// The triples of columns whose product is constant.
+    fn lines(columns: &[u16]) -> Vec<[usize; 3]> {
+        let k = columns.len();
+        let triples = (0..k).flat_map(|a| (a + 1..k).flat_map(move |b| (b + 1..k).map(move |c| [a, b, c])));
+        triples.filter(|t| matches!(t.iter().fold(0, |x, &i| x ^ columns[i]), 0 | 255)).collect()
+    }
+
+    #[test]
+    fn what_the_proof_says_of_eight_runs() {
+        let mut seen = 0;
+        arrays(2, 7, &mut Vec::new(), &mut |columns| {
+            assert_eq!(lines(columns).len(), 7);
+            seen += 1;
+        });
+        assert_eq!(seen, 30, "the ways to see eight points as an affine space");
+        let mut seen = 0;
+        arrays(2, 5, &mut Vec::new(), &mut |columns| {
+            let lines = lines(columns);
+            assert_eq!(lines.len(), 2);
+            let all: std::collections::BTreeSet<usize> = lines.into_iter().flatten().collect();
+            assert_eq!(all.len(), 5, "one common point");
+            seen += 1;
+        });
+        assert_eq!(seen, 30 * 21);
+        let mut other = 0;
+        arrays(2, 3, &mut Vec::new(), &mut |columns| {
+            let sum: i32 = (0..8)
+                .map(|run| if (columns.iter().fold(0, |x, c| x ^ c) >> run) & 1 == 0 { 1 } else { -1 })
+                .sum();
+            other += i32::from(![0, 8, -8].contains(&sum));
+        });
+        assert_eq!(other, 0, "a triple that is no line sums to zero");
+    }
+
+    #[test]
+    fn limits() {
+        assert!(eight_runs_allow(3, 4) && !eight_runs_allow(3, 5));
+        assert!(eight_runs_allow(5, 6) && !eight_runs_allow(5, 7) && eight_runs_allow(4, 9));
+    }
 }

@@ -2,6 +2,7 @@ use serde::{Deserialize, Serialize};
 
 use super::blocks::blocks_allow;
 use super::check::theorem;
+use super::distances::Distances;
 use super::eight::eight_runs_allow;
 use super::error::ExclusionError;
 use super::parity::{parity_applies, parity_bounds};
@@ -57,6 +58,11 @@ pub enum Reason {
         /// The levels.
         levels: u16,
     },
+    /// The distances from one run.
+    Distances {
+        /// The cases.
+        cases: Distances,
+    },
     /// A search that went through all arrays column by column: its record, which only making the
     /// search again can confirm.
     Exhaustion {
@@ -78,6 +84,7 @@ impl Reason {
             Self::Parity { .. } => "parity",
             Self::FourRunsPerLevel { .. } => "four-runs-per-level",
             Self::EightRunsPerLevel { .. } => "eight-runs-per-level",
+            Self::Distances { .. } => "distances",
             Self::Exhaustion { .. } => "exhaustion",
         }
     }
@@ -127,6 +134,7 @@ impl Reason {
                 demand(about.strength == 3 && about.runs == runs && factors(*levels) > 0)?;
                 if eight_runs_allow(*levels, factors(2)) { Err(ExclusionError::Weak) } else { Ok(()) }
             }
+            Self::Distances { cases } => cases.check(about),
             Self::Exhaustion { record } => replay(record, about).map_err(ExclusionError::Replay),
         }
     }

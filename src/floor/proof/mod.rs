@@ -8,11 +8,12 @@
 //! | `theorem` | what Rao's bound and those of Bose & Bush give |
 //! | `subject`, `exclusion` | arrays of exactly N runs: what follows from them, and why there are none |
 //! | `program`, `krawtchouk` | certificates of the linear program |
-//! | `parity`, `blocks`, `eight` | counting arguments |
+//! | `parity`, `blocks`, `eight`, `distances` | counting arguments |
 //! | `check` | the rules, in order |
 
 mod blocks;
 mod check;
+mod distances;
 mod eight;
 mod error;
 mod exclusion;
@@ -30,6 +31,7 @@ use super::FloorError;
 use crate::mix::Mix;
 
 pub use blocks::{block_limit, blocks_allow};
+pub use distances::{Distances, MAX_BRANCHES};
 pub use eight::eight_runs_allow;
 pub use error::{ExclusionError, ProofError};
 pub use exclusion::{Exclusion, Reason, Replay};

@@ -76,26 +76,8 @@ impl Weights {
         if self.constant <= 0 {
             return Err(ExclusionError::Constant);
         }
-        let tuples = counts
-            .iter()
-            .try_fold(1u64, |n, &(_, k)| n.checked_mul(k.checked_add(1)?))
-            .and_then(|n| usize::try_from(n).ok())
-            .filter(|&n| n <= MAX_TUPLES && n.saturating_mul(self.terms.len()) <= MAX_COST)
-            .filter(|_| counts.iter().all(|&(_, k)| k <= MAX_FACTORS));
-        if tuples.is_none() {
-            return Err(ExclusionError::TooLarge);
-        }
-        for (n, term) in self.terms.iter().enumerate() {
-            let size: u64 = term.at.iter().map(|&j| u64::from(j)).sum();
-            let right = term.at.len() == counts.len()
-                && size > 0
-                && term.at.iter().zip(counts).all(|(&j, &(_, k))| u64::from(j) <= k)
-                && (n == 0 || self.terms[n - 1].at < term.at)
-                && (size <= u64::from(strength) || term.weight >= 0);
-            if !right {
-                return Err(ExclusionError::Weight(term.at.clone()));
-            }
-        }
+        self.check_size(counts)?;
+        self.check_terms(counts, |size, weight| size <= u64::from(strength) || weight >= 0)?;
         if self.at_zero() < 0 {
             return Err(ExclusionError::Negative(vec![0; counts.len()]));
         }
@@ -105,8 +87,57 @@ impl Weights {
         }
     }
 
+    /// Whether the terms are in order and inside the mix, and `may` allows each |j| its weight.
+    pub(super) fn check_terms(
+        &self,
+        counts: &[(u16, u64)],
+        may: impl Fn(u64, i64) -> bool,
+    ) -> Result<(), ExclusionError> {
+        for (n, term) in self.terms.iter().enumerate() {
+            let size: u64 = term.at.iter().map(|&j| u64::from(j)).sum();
+            let right = term.at.len() == counts.len()
+                && size > 0
+                && term.at.iter().zip(counts).all(|(&j, &(_, k))| u64::from(j) <= k)
+                && (n == 0 || self.terms[n - 1].at < term.at)
+                && may(size, term.weight);
+            if !right {
+                return Err(ExclusionError::Weight(term.at.clone()));
+            }
+        }
+        Ok(())
+    }
+
+    /// Whether the check is short enough to be made.
+    pub(super) fn check_size(&self, counts: &[(u16, u64)]) -> Result<(), ExclusionError> {
+        let tuples = counts
+            .iter()
+            .try_fold(1u64, |n, &(_, k)| n.checked_mul(k.checked_add(1)?))
+            .and_then(|n| usize::try_from(n).ok())
+            .filter(|&n| n <= MAX_TUPLES && n.saturating_mul(self.terms.len()) <= MAX_COST)
+            .filter(|_| counts.iter().all(|&(_, k)| k <= MAX_FACTORS));
+        tuples.map(|_| ()).ok_or(ExclusionError::TooLarge)
+    }
+
     /// A place i ≠ 0 with G(i) < 0.
     fn negative(&self, counts: &[(u16, u64)]) -> Option<Vec<u32>> {
+        let mut found = None;
+        self.visit(counts, &mut |at, value| {
+            let wrong = *value < BigInt::ZERO && at.iter().any(|&x| x > 0);
+            if wrong {
+                found = Some(at.to_vec());
+            }
+            !wrong
+        });
+        found
+    }
+
+    /// Calls `with` for all i in ascending order with m·G(i), m a common multiple of the v_j that
+    /// is returned, until it says false. The sizes and the terms must have been checked.
+    pub(super) fn visit(
+        &self,
+        counts: &[(u16, u64)],
+        with: &mut dyn FnMut(&[u32], &BigInt) -> bool,
+    ) -> BigInt {
         let tables: Vec<Krawtchouk> = counts.iter().map(|&(s, k)| Krawtchouk::new(s, k as usize)).collect();
         let size = |term: &Term| -> BigInt {
             term.at.iter().zip(&tables).map(|(&j, table)| table.value(j as usize, 0)).product()
@@ -115,22 +146,24 @@ impl Weights {
         let multiple = self.terms.iter().fold(BigInt::from(1), |m, t| m.lcm(&size(t)));
         let parts: Vec<(&[u32], BigInt)> =
             self.terms.iter().map(|t| (&t.at[..], BigInt::from(t.weight) * (&multiple / size(t)))).collect();
-        let constant = BigInt::from(self.constant) * multiple;
-        search(&tables, &parts, &constant, &mut Vec::new())
+        let constant = BigInt::from(self.constant) * &multiple;
+        walk(&tables, &parts, &constant, &mut Vec::new(), with);
+        multiple
     }
 }
 
-/// Looks through all places that begin with `at`; `parts` are the terms with the factors of that
-/// beginning multiplied in, those of equal remaining index added up.
-fn search(
+/// Visits all places that begin with `at`, false when told to stop; `parts` are the terms with the
+/// factors of that beginning multiplied in, those of equal remaining index added up.
+fn walk(
     tables: &[Krawtchouk],
     parts: &[(&[u32], BigInt)],
     constant: &BigInt,
     at: &mut Vec<u32>,
-) -> Option<Vec<u32>> {
+    with: &mut dyn FnMut(&[u32], &BigInt) -> bool,
+) -> bool {
     let Some((table, rest)) = tables.split_first() else {
         let sum: BigInt = parts.iter().map(|p| &p.1).sum();
-        return (sum > *constant && at.iter().any(|&x| x > 0)).then(|| at.clone());
+        return with(at, &(constant - sum));
     };
     // Terms that agree in the rest stand together, so that they can be added up.
     let mut order: Vec<usize> = (0..parts.len()).collect();
@@ -146,11 +179,11 @@ fn search(
             }
         }
         at.push(x as u32);
-        let found = search(rest, &next, constant, at);
+        let goes_on = walk(rest, &next, constant, at, with);
         at.pop();
-        if found.is_some() {
-            return found;
+        if !goes_on {
+            return false;
         }
     }
-    None
+    true
 }

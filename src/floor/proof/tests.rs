@@ -59,7 +59,11 @@ fn each_rule_rejects() {
         change(&mut p);
         p.check().unwrap_err()
     };
-    assert_eq!(broken(&|p| p.version = 2), ProofError::Version(2));
+    assert_eq!(broken(&|p| p.version = 0), ProofError::Version(0));
+    assert_eq!(broken(&|p| p.version = 3), ProofError::Version(3));
+    let mut first = good.clone();
+    first.version = 1;
+    first.check().unwrap();
     assert_eq!(broken(&|p| p.strength = 0), ProofError::Strength(0));
     assert_eq!(broken(&|p| p.strength = 10), ProofError::Strength(10));
     assert_eq!(broken(&|p| p.divisibility.sets.push(vec![2, 2])), ProofError::Set(vec![2, 2]));
