@@ -38,6 +38,7 @@ mod splits;
 pub mod subspaces;
 pub mod symmetric;
 mod t_matrices;
+pub mod types;
 mod write;
 
 pub use circulants::FourCirculants;
