@@ -45,14 +45,14 @@ pub fn beyond_page(shelf: &Shelf) -> Result<String, String> {
         "<!-- made by: cargo run --release --example beyond_page > catalog/BEYOND.md -->\n\n\
          # Beyond the published values known to us\n\n\
          Every mix here is maximal on the shelf (`SHELF.md`) and is obtained by dropping, merging and splitting\n\
-         columns from none that this project remembers from the literature (`published.txt`, from memory, not\n\
+         columns from none that this project remembers from the literature (`published.txt`: from memory, not\n\
          complete, not a copy of any table). That is all that is claimed: others may hold the same or more.\n\
          Remembered beside each: the nearest mixes of the literature, from memory.\n\n\
-         The certificate is the judge's on the array that the recipe builds, which no judge was shown: strength,\n\
-         the first entries of the generalised word-length pattern, and the SHA-256 of the array with its columns\n\
-         in the order of the recipe (`src/verify/digest.rs`). `trysquare catalog --runs N` lists the recipes.\n\n\
-         | runs | mix | of N − 1 | remembered | how it is made | strength | B1, B2, B3, B4 | sha256 |\n\
-         | --- | --- | --- | --- | --- | --- | --- | --- |\n",
+         The certificate is the judges', who are shown the array alone and not how it was made: strength, the first\n\
+         entries of the generalised word-length pattern, and the SHA-256 of the array with its columns in the order\n\
+         of the recipe (`src/verify/digest.rs`). `trysquare catalog --runs N` lists the recipes.\n\n\
+         | runs | mix | of N − 1 | remembered | how it is made | source | strength | B1, B2, B3, B4 | sha256 |\n\
+         | --- | --- | --- | --- | --- | --- | --- | --- | --- |\n",
     );
     for row in rows() {
         let all = shelf.parents(row.runs, row.strength);
@@ -68,12 +68,13 @@ pub fn beyond_page(shelf: &Shelf) -> Result<String, String> {
         let certificate = judged.certificate;
         writeln!(
             text,
-            "| {} | {} | {} | {} | {} | {} | {} | {} |",
+            "| {} | {} | {} | {} | {} | {} | {} | {} | {} |",
             row.runs,
             row.bag,
             row.bag.degrees(),
             row.remembered,
             parent.recipe,
+            parent.source.replace('|', "/"),
             certificate.strength,
             pattern(&certificate),
             certificate.sha256

@@ -14,6 +14,7 @@
 //! | `subspaces` | subspaces of which any t are independent |
 //! | `symmetric` | arrays of strength 2 with a prescribed group |
 //! | `t_matrices` | T-matrices, to be multiplied with Williamson's |
+//! | `types` | two-level columns beside one p-level column in 4p runs, under a group that turns the types |
 //! | `write` | what was found as the text of a seed |
 //!
 //! `frame` (runs as points of a box), `splits`, `halves` and `clique` serve `beside`.

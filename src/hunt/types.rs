@@ -8,23 +8,21 @@
 //! types, in each block its own, keeps that. Orbits under a group of such moves that are
 //! orthogonal inside are listed, and a clique of orbits is looked for.
 
+mod group;
+mod words;
+
 use std::collections::HashSet;
 
 use rayon::prelude::*;
 
+pub use group::Turn;
+
+use self::group::{Element, classes, group};
+use self::words::{Word, visit};
 use super::clique::Clique;
 use super::random::Random;
 use super::splits::{Orbit, Split};
 use crate::construct::OrbitColumn;
-
-/// A move of the vectors: the entry at block j goes to block `positions[j]`, its type turned.
-#[derive(Clone, Debug, PartialEq, Eq)]
-pub struct Turn {
-    /// The image of every block.
-    pub positions: Vec<u16>,
-    /// For every block the images of the types 1, 2, 3: a signed permutation.
-    pub types: Vec<[i8; 3]>,
-}
 
 /// What is looked for.
 #[derive(Clone, Debug)]
@@ -63,24 +61,8 @@ pub struct Types {
     pub pool: usize,
 }
 
-/// An entry: twice the type (from 0), plus one when negative.
-type Word = [u8; 32];
-
-/// An element of the group.
-#[derive(Clone, PartialEq, Eq)]
-struct Element {
-    to: Vec<u8>,
-    turn: Vec<[u8; 6]>,
-}
-
-/// The most entries of a sorted half.
-const MOST: u64 = 1 << 21;
-/// The most entries of the other half that are looked up.
-const DRAWN: u64 = 1 << 24;
 /// The most orbits that are kept.
 const POOL: usize = 400_000;
-/// The largest group.
-const GROUP: usize = 1024;
 /// Attempts between comparisons; fixed, so that the result does not depend on the threads.
 const ROUND: u64 = 4;
 
@@ -133,75 +115,6 @@ pub fn hunt_types(request: &TypesHunt) -> Option<Types> {
         first += ROUND;
     }
     best
-}
-
-/// All elements, the identity first.
-fn group(p: usize, generators: &[Turn]) -> Option<Vec<Element>> {
-    let generators: Vec<Element> = generators.iter().map(|t| element(p, t)).collect::<Option<_>>()?;
-    let one = Element { to: (0..p as u8).collect(), turn: vec![[0, 1, 2, 3, 4, 5]; p] };
-    let mut elements = vec![one];
-    let mut at = 0;
-    while at < elements.len() {
-        for g in &generators {
-            let next = product(&elements[at], g);
-            if !elements.contains(&next) {
-                elements.push(next);
-            }
-        }
-        if elements.len() > GROUP {
-            return None;
-        }
-        at += 1;
-    }
-    Some(elements)
-}
-
-fn element(p: usize, turn: &Turn) -> Option<Element> {
-    let mut sorted = turn.positions.clone();
-    sorted.sort_unstable();
-    if sorted != (0..p as u16).collect::<Vec<_>>() || turn.types.len() != p {
-        return None;
-    }
-    let table = |images: &[i8; 3]| {
-        let mut known = images.map(i8::unsigned_abs);
-        known.sort_unstable();
-        let code = |c: u8| {
-            let image = images[usize::from(c / 2)];
-            2 * (image.unsigned_abs() - 1) + (u8::from(image < 0) ^ (c & 1))
-        };
-        (known == [1, 2, 3]).then(|| [0, 1, 2, 3, 4, 5].map(code))
-    };
-    let turns = turn.types.iter().map(table).collect::<Option<_>>()?;
-    Some(Element { to: turn.positions.iter().map(|&x| x as u8).collect(), turn: turns })
-}
-
-/// First a, then b.
-fn product(a: &Element, b: &Element) -> Element {
-    let to: Vec<u8> = a.to.iter().map(|&j| b.to[usize::from(j)]).collect();
-    let turn = a.turn.iter().zip(&a.to).map(|(t, &j)| t.map(|c| b.turn[usize::from(j)][usize::from(c)]));
-    Element { turn: turn.collect(), to }
-}
-
-/// The first element of each class of conjugates, the identity left out.
-fn classes(elements: &[Element]) -> Vec<usize> {
-    let mut firsts = Vec::new();
-    let mut met = vec![false; elements.len()];
-    for i in 1..elements.len() {
-        if met[i] {
-            continue;
-        }
-        firsts.push(i);
-        // k is a conjugate of i when i·h = h·k for some h.
-        for h in elements {
-            let image = product(&elements[i], h);
-            for (k, e) in elements.iter().enumerate() {
-                if !met[k] && product(h, e) == image {
-                    met[k] = true;
-                }
-            }
-        }
-    }
-    firsts
 }
 
 impl Setting<'_> {
@@ -276,7 +189,7 @@ impl Setting<'_> {
                 self.fixed(&self.elements[class], sign, random, &mut keep);
             }
         }
-        self.words(given, random, &mut keep);
+        visit(self.p, given, self.request.looks, random, &mut keep);
         pool
     }
 
@@ -329,64 +242,6 @@ impl Setting<'_> {
         }
     }
 
-    /// Shows words orthogonal to the given ones, all of them or `looks` many: meet in the middle.
-    fn words(&self, given: &[Word], random: &mut Random, keep: &mut impl FnMut(&Word) -> bool) {
-        let keys: Vec<[u64; 6]> = self.keys(given, random);
-        let middle = self.p / 2;
-        let left = Half::new(&keys[..middle], true, random);
-        let right = Half::new(&keys[middle..], false, random);
-        if given.is_empty() {
-            let all = left.size.saturating_mul(right.size);
-            for n in 0..all.min(self.request.looks) {
-                let (a, b) = if all <= self.request.looks {
-                    (n / right.size, n % right.size)
-                } else {
-                    (random.bits() % left.size, random.bits() % right.size)
-                };
-                let mut word = [0; 32];
-                left.write(a, &mut word[..middle]);
-                right.write(b, &mut word[middle..self.p]);
-                if keep(&word) {
-                    return;
-                }
-            }
-            return;
-        }
-        let mut sorted: Vec<(u64, u64)> = (0..left.size.min(MOST))
-            .map(|i| left.scrambled(i))
-            .map(|i| (left.key(i).wrapping_neg(), i))
-            .collect();
-        sorted.sort_unstable();
-        let index = Index::new(&sorted);
-        let mut looks = 0;
-        for i in 0..right.size.min(DRAWN) {
-            let b = right.scrambled(i);
-            for &(_, a) in index.find(&sorted, right.key(b)) {
-                let mut word = [0; 32];
-                left.write(a, &mut word[..middle]);
-                right.write(b, &mut word[middle..self.p]);
-                looks += 1;
-                if keep(&word) || looks >= self.request.looks {
-                    return;
-                }
-            }
-        }
-    }
-
-    /// A weight for each position and entry, so that the sum over a word is zero when it is
-    /// orthogonal to all given words, and otherwise hardly ever.
-    fn keys(&self, given: &[Word], random: &mut Random) -> Vec<[u64; 6]> {
-        let mut keys = vec![[0u64; 6]; self.p];
-        for word in given {
-            let weight = random.bits();
-            for (key, &c) in keys.iter_mut().zip(&word[..self.p]) {
-                key[usize::from(c)] = key[usize::from(c)].wrapping_add(weight);
-                key[usize::from(c ^ 1)] = key[usize::from(c ^ 1)].wrapping_sub(weight);
-            }
-        }
-        keys
-    }
-
     fn attempt(&self, attempt: u64) -> Types {
         let mut random = Random::new(self.request.seed ^ attempt.wrapping_mul(0xD1B5_4A32_D192_ED03));
         let mut chosen: Vec<Word> = Vec::new();
@@ -420,78 +275,109 @@ impl Setting<'_> {
     }
 }
 
-/// The words on some positions, by number.
-struct Half<'a> {
-    keys: &'a [[u64; 6]],
-    /// Whether the first entry is positive.
-    positive: bool,
-    size: u64,
-    step: u64,
-    from: u64,
-}
+#[cfg(test)]
+mod tests {
+    use super::*;
+    use crate::construct::orbit_array;
+    use crate::verify::{Demand, Verdict, certify};
 
-impl<'a> Half<'a> {
-    fn new(keys: &'a [[u64; 6]], positive: bool, random: &mut Random) -> Self {
-        let size = 6u64.pow(keys.len() as u32) / if positive { 2 } else { 1 };
-        // Prime to 6.
-        let step = (random.bits() % size / 6) * 6 + 1;
-        Self { keys, positive, size, step, from: random.bits() % size }
+    /// The cyclic group of order 2(p − 1): blocks 1 … p − 1 in a circle, where the types 1 and 2 change
+    /// places and type 3 its sign once around; 1 and 2 change places in block 0.
+    fn circle(p: u16) -> Turn {
+        let positions = (0..p).map(|j| if j == 0 { 0 } else { j % (p - 1) + 1 }).collect();
+        let mut types = vec![[1, 2, 3]; usize::from(p)];
+        types[0] = [2, 1, 3];
+        types[usize::from(p) - 1] = [2, 1, -3];
+        Turn { positions, types }
     }
 
-    /// Each number once, in an order that depends on the seed.
-    fn scrambled(&self, i: u64) -> u64 {
-        let product = u128::from(i) * u128::from(self.step) + u128::from(self.from);
-        (product % u128::from(self.size)) as u64
-    }
-
-    fn entries(&self, number: u64) -> impl Iterator<Item = u8> {
-        let mut rest = number;
-        let positive = self.positive;
-        (0..self.keys.len()).map(move |j| {
-            let base = if positive && j == 0 { 3 } else { 6 };
-            let digit = (rest % base) as u8;
-            rest /= base;
-            if base == 3 { 2 * digit } else { digit }
-        })
-    }
-
-    fn key(&self, number: u64) -> u64 {
-        self.entries(number)
-            .zip(self.keys)
-            .fold(0, |sum, (code, key)| sum.wrapping_add(key[usize::from(code)]))
-    }
-
-    fn write(&self, number: u64, word: &mut [u8]) {
-        for (code, place) in self.entries(number).zip(word) {
-            *place = code;
+    fn request(p: u16, wanted: usize) -> TypesHunt {
+        TypesHunt {
+            blocks: p,
+            symmetry: vec![circle(p)],
+            wanted,
+            seed: 1,
+            attempts: 1,
+            looks: 200_000,
+            stages: vec![],
+            steps: 60,
         }
     }
-}
 
-/// Where the keys that begin with given bits start in a sorted list.
-struct Index {
-    starts: Vec<u32>,
-}
-
-impl Index {
-    const BITS: u32 = 20;
-
-    fn new(sorted: &[(u64, u64)]) -> Self {
-        let mut starts = vec![0u32; (1 << Self::BITS) + 1];
-        for (key, _) in sorted {
-            starts[(key >> (64 - Self::BITS)) as usize + 1] += 1;
-        }
-        for i in 1..starts.len() {
-            starts[i] += starts[i - 1];
-        }
-        Self { starts }
+    fn judged(found: &Types) -> bool {
+        let array = orbit_array(&[], &found.columns).unwrap();
+        certify(&array, &Demand::strength(2)).unwrap().verdict == Verdict::Orthogonal
     }
 
-    fn find<'a>(&self, sorted: &'a [(u64, u64)], key: u64) -> &'a [(u64, u64)] {
-        let bucket = (key >> (64 - Self::BITS)) as usize;
-        let among = &sorted[self.starts[bucket] as usize..self.starts[bucket + 1] as usize];
-        let begin = among.partition_point(|x| x.0 < key);
-        let end = among[begin..].partition_point(|x| x.0 == key);
-        &among[begin..begin + end]
+    #[test]
+    fn one_orbit_of_a_cyclic_group() {
+        for (p, wanted) in [(3, 4), (5, 8), (7, 12)] {
+            let found = hunt_types(&request(p, wanted)).unwrap();
+            assert!(found.complete && found.beside == wanted && judged(&found), "{p}");
+        }
+    }
+
+    #[test]
+    #[ignore = "ten million vectors"]
+    fn sixteen_beside_nine_levels() {
+        let found = hunt_types(&TypesHunt { looks: 6_000_000, ..request(9, 16) }).unwrap();
+        assert!(found.complete && judged(&found));
+    }
+
+    #[test]
+    fn listed_again_and_the_same_for_any_number_of_threads() {
+        // 30 are too many: every attempt is made. Positions times 2 modulo 7.
+        let positions: Vec<u16> = (0..7).map(|j| 2 * j % 7).collect();
+        let request = TypesHunt {
+            symmetry: vec![Turn { positions, types: vec![[2, 3, 1]; 7] }],
+            attempts: 6,
+            looks: 5000,
+            stages: vec![3],
+            steps: 40,
+            ..request(7, 30)
+        };
+        let on = |threads| {
+            let pool = rayon::ThreadPoolBuilder::new().num_threads(threads).build().unwrap();
+            pool.install(|| hunt_types(&request)).unwrap()
+        };
+        let found = on(1);
+        assert!(!found.complete && found.beside >= 6 && judged(&found));
+        assert_eq!(on(3), found);
+    }
+
+    /// The words that an element fixes up to sign, by trying all of them.
+    #[test]
+    fn fixed_words_are_listed() {
+        let turn =
+            Turn { positions: vec![1, 2, 0, 3], types: vec![[2, 1, 3], [1, 2, 3], [1, 2, -3], [1, -2, 3]] };
+        let hunt = TypesHunt { symmetry: vec![turn], ..request(4, 1) };
+        let elements = group(4, &hunt.symmetry).unwrap();
+        let setting = Setting { request: &hunt, p: 4, classes: vec![1], elements };
+        let mut listed = HashSet::new();
+        for sign in [0, 1] {
+            setting.fixed(&setting.elements[1], sign, &mut Random::new(1), &mut |w| !listed.insert(*w));
+        }
+        let mut all = HashSet::new();
+        visit(4, &[], u64::MAX, &mut Random::new(1), |w| !all.insert(*w));
+        assert_eq!(all.len(), 648);
+        all.retain(|w| setting.image(w, &setting.elements[1]) == *w);
+        assert!(!all.is_empty() && all == listed);
+    }
+
+    #[test]
+    fn requests_that_make_no_sense() {
+        let good = request(5, 8);
+        let turn = |positions: Vec<u16>, types| vec![Turn { positions, types }];
+        for bad in [
+            TypesHunt { blocks: 1, ..good.clone() },
+            TypesHunt { blocks: 33, ..good.clone() },
+            TypesHunt { blocks: 6, ..good.clone() },
+            TypesHunt { symmetry: turn(vec![0, 1, 2, 3, 3], vec![[1, 2, 3]; 5]), ..good.clone() },
+            TypesHunt { symmetry: turn(vec![0, 1, 2, 3, 4], vec![[1, 2, 3]; 4]), ..good.clone() },
+            TypesHunt { symmetry: turn(vec![0, 1, 2, 3, 4], vec![[1, 2, 2]; 5]), ..good.clone() },
+            TypesHunt { symmetry: turn(vec![0, 1, 2, 3, 4], vec![[0, 2, 3]; 5]), ..good },
+        ] {
+            assert!(hunt_types(&bad).is_none(), "{bad:?}");
+        }
     }
 }

@@ -18,7 +18,7 @@ pub fn has_conference(n: u32) -> bool {
 
 /// Order 2, q + 1 for a prime power q ≡ 3 (mod 4), and twice any of these.
 fn has_skew(n: u32) -> bool {
-    n == 2 || n % 4 == 0 && (prime_power(n - 1).is_some() || has_skew(n / 2))
+    n == 2 || n > 2 && n % 4 == 0 && (prime_power(n - 1).is_some() || has_skew(n / 2))
 }
 
 /// A conference matrix of order n, by rows: C has zeros on the diagonal and ±1 elsewhere, and
