@@ -18,7 +18,7 @@ pub fn has_conference_blocks(q: u32) -> bool {
 /// `q`: all of these must hold:
 /// * q is odd and at least 3;
 /// * [`conference`] has matrices of the orders q − 1 and q + 1. For q up to 40 these are 3, 5, 7, 9,
-///   11, 13, 15, 17, 19, 25, 27, 29 and 31.
+///   11, 13, 15, 17, 19, 25, 27, 29, 31 and 39.
 ///
 /// # Result
 /// The two-level columns, then the q-level one; run 4j + x is place x of block j.
@@ -87,7 +87,7 @@ mod tests {
     #[test]
     fn every_q_up_to_forty() {
         let known: Vec<u32> = (0..=40).filter(|&q| has_conference_blocks(q)).collect();
-        assert_eq!(known, [3, 5, 7, 9, 11, 13, 15, 17, 19, 25, 27, 29, 31]);
+        assert_eq!(known, [3, 5, 7, 9, 11, 13, 15, 17, 19, 25, 27, 29, 31, 39]);
         for q in known {
             let array = conference_blocks(q).unwrap();
             assert_eq!((array.runs(), array.factors()), (4 * q as usize, 2 * q as usize - 1));

@@ -18,7 +18,7 @@ pub fn has_conference(n: u32) -> bool {
 
 /// Order 2, q + 1 for a prime power q ≡ 3 (mod 4), and twice any of these.
 fn has_skew(n: u32) -> bool {
-    n == 2 || n > 2 && n % 4 == 0 && (prime_power(n - 1).is_some() || has_skew(n / 2))
+    n == 2 || n > 2 && n.is_multiple_of(4) && (prime_power(n - 1).is_some() || has_skew(n / 2))
 }
 
 /// A conference matrix of order n, by rows: C has zeros on the diagonal and ±1 elsewhere, and
@@ -61,16 +61,11 @@ pub fn conference(n: u32) -> Result<Vec<Vec<i8>>, ConstructError> {
 fn paley(q: u32) -> Result<Vec<Vec<i8>>, ConstructError> {
     let field = Field::new(q)?;
     let square = squares(&field);
+    let first = if q % 4 == 1 { 1 } else { -1 };
     let entry = |i: u32, j: u32| match (i, j) {
         _ if i == j => 0,
         (0, _) => 1,
-        (_, 0) => {
-            if q % 4 == 1 {
-                1
-            } else {
-                -1
-            }
-        }
+        (_, 0) => first,
         _ if square[usize::from(field.sub((i - 1) as u16, (j - 1) as u16))] => 1,
         _ => -1,
     };
