@@ -2,7 +2,7 @@
 //! group written as cyclic orders (`3`, `3x3`) or `1`; prints the seed.
 
 use trysquare::hunt::orbits_seed;
-use trysquare::hunt::symmetric::{SymmetricHunt, hunt};
+use trysquare::hunt::symmetric::{Motion, SymmetricHunt, hunt};
 use trysquare::mix::Mix;
 
 fn main() -> Result<(), Box<dyn std::error::Error>> {
@@ -17,12 +17,15 @@ fn main() -> Result<(), Box<dyn std::error::Error>> {
     let request = SymmetricHunt {
         runs: runs.parse()?,
         levels: mix.parse::<Mix>()?.levels().to_vec(),
+        strength: 2,
         group,
         fixed: vec![],
-        moving: false,
+        motion: Motion::Any,
+        elementary: false,
         seed: seed.parse()?,
         attempts: attempts.parse()?,
         pool: pool.parse()?,
+        exchanges: 0,
     };
     let start = std::time::Instant::now();
     let found = hunt(&request, None).ok_or("the runs are no multiple of the group or of a level")?;

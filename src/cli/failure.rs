@@ -1,4 +1,6 @@
 use crate::floor::FloorError;
+use crate::hunt::campaign::{HuntError, RunError};
+use crate::hunt::near::NearError;
 use crate::seek::SeekError;
 use crate::verify::JudgeError;
 
@@ -45,11 +47,40 @@ impl From<SeekError> for Failure {
     }
 }
 
+impl From<HuntError> for Failure {
+    fn from(e: HuntError) -> Self {
+        match e {
+            e @ HuntError::State { .. } => Self { code: ExitCode::Input, message: e.to_string() },
+            e => Self::usage(e),
+        }
+    }
+}
+
+impl From<RunError> for Failure {
+    fn from(e: RunError) -> Self {
+        match e {
+            RunError::Request(e) => e.into(),
+            e => Self::stopped(e),
+        }
+    }
+}
+
 impl From<JudgeError> for Failure {
     fn from(e: JudgeError) -> Self {
         match e {
             JudgeError::Strength { .. } => Self::usage(e),
             e @ JudgeError::Disagreement { .. } => Self::stopped(e),
+        }
+    }
+}
+
+impl From<NearError> for Failure {
+    fn from(e: NearError) -> Self {
+        match e {
+            NearError::Seek(e) => e.into(),
+            NearError::Judge(e) => e.into(),
+            NearError::TooLarge { .. } | NearError::Array(_) => Self::stopped(e),
+            e => Self::usage(e),
         }
     }
 }

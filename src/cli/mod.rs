@@ -2,11 +2,12 @@
 //!
 //! | file | what lives there |
 //! | --- | --- |
-//! | `seek`, `batch`, `certify`, `recheck`, `floor`, `catalog` | one command each (`batch` is `seek --batch`): its flags, `run`, and its sentences |
+//! | `seek`, `batch`, `certify`, `recheck`, `floor`, `catalog`, `hunt` | one command each (`batch` is `seek --batch`): its flags, `run`, and its sentences |
 //! | `exit` | the exit codes |
 //! | `failure` | why a command gave up, with its exit code |
 //! | `flags` | flags that several commands share |
 //! | `input`, `output` | files and the standard streams; output files appear whole or not at all |
+//! | `near` | `seek --budget`: the nearest plan and its account |
 //! | `progress` | the sign of life on a terminal |
 //! | `words` | tables and phrases that several commands print |
 //!
@@ -20,7 +21,9 @@ mod exit;
 mod failure;
 mod flags;
 mod floor;
+mod hunt;
 mod input;
+mod near;
 mod output;
 mod progress;
 mod recheck;
@@ -56,6 +59,7 @@ enum Command {
     Recheck(recheck::Flags),
     Floor(floor::Flags),
     Catalog(catalog::Flags),
+    Hunt(Box<hunt::Flags>),
 }
 
 /// Runs the program on the arguments of the process.
@@ -76,6 +80,7 @@ pub fn run() -> ExitCode {
         Command::Recheck(flags) => recheck::run(&flags),
         Command::Floor(flags) => floor::run(&flags),
         Command::Catalog(flags) => catalog::run(&flags),
+        Command::Hunt(flags) => hunt::run(&flags),
     };
     outcome.unwrap_or_else(|Failure { code, message }| {
         output::remark(&format!("error: {message}"));

@@ -2,6 +2,7 @@ use std::collections::BTreeSet;
 use std::fs::{self, File};
 use std::io::{self, BufWriter, Write};
 use std::path::{Path, PathBuf};
+use std::sync::atomic::{AtomicBool, Ordering};
 use std::sync::{Mutex, PoisonError};
 
 use tempfile::NamedTempFile;
@@ -15,10 +16,28 @@ fn unfinished() -> std::sync::MutexGuard<'static, BTreeSet<PathBuf>> {
     UNFINISHED.lock().unwrap_or_else(PoisonError::into_inner)
 }
 
+/// Whether the command that runs ends by itself when it is told to.
+static LISTENS: AtomicBool = AtomicBool::new(false);
+/// Whether it was told to.
+static INTERRUPTED: AtomicBool = AtomicBool::new(false);
+
+/// From now on an interrupt is only noted, the first one at least.
+pub(super) fn listen() {
+    LISTENS.store(true, Ordering::Relaxed);
+}
+
+/// Whether there was an interrupt since [`listen`].
+pub(super) fn interrupted() -> bool {
+    INTERRUPTED.load(Ordering::Relaxed)
+}
+
 /// From now on an interrupt removes unfinished files and ends with the code for it.
 pub(super) fn clean_up_on_interrupt() {
     // Where no handler can be set, the system's own way of ending remains.
     let _ = ctrlc::set_handler(|| {
+        if LISTENS.load(Ordering::Relaxed) && !INTERRUPTED.swap(true, Ordering::Relaxed) {
+            return;
+        }
         for path in unfinished().iter() {
             let _ = fs::remove_file(path);
         }

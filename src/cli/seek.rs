@@ -2,7 +2,8 @@ use clap::{Args, ValueEnum};
 
 use super::output::{self, Output};
 use super::progress::Progress;
-use super::{ExitCode, Failure, batch, flags, words};
+use super::{ExitCode, Failure, batch, flags, near, words};
+use crate::array::Array;
 use crate::exchange::document::SeekDocument;
 use crate::exchange::{Header, Symbols, csv, text};
 use crate::floor::Proof;
@@ -18,6 +19,7 @@ use crate::seek::{Answer, DEFAULT_MAX_RUNS, Outcome, Request, Verdict, seek};
 Examples:
   trysquare seek \"2^1 3^7\"                      one factor of 2 levels, seven of 3
   trysquare seek \"4 2^11\" --strength 3 --out plan.csv --certificate plan.json
+  trysquare seek \"2^8 5\" --budget 18            the nearest plan of 18 runs: 20 would be exact
   trysquare seek --batch mixes.txt              one mix per line in, one JSON object per line out
 
 A batch skips blank lines and lines that begin with #, and never stops in the middle: a line that
@@ -37,6 +39,13 @@ pub(super) struct Flags {
     /// The largest number of runs that is of use
     #[arg(long, value_name = "N", default_value_t = DEFAULT_MAX_RUNS, value_parser = clap::value_parser!(u64).range(1..))]
     max_runs: u64,
+    /// The runs that can be paid for: an exact array when one fits, else the nearest plan of so many
+    /// runs that is found, with the verdict near
+    #[arg(long, value_name = "N", conflicts_with = "batch", value_parser = clap::value_parser!(u64).range(1..))]
+    budget: Option<u64>,
+    /// Runs already made, with which the plan must begin
+    #[arg(long, value_name = "FILE", requires = "budget")]
+    keep: Option<String>,
     /// How the array is written [default: csv; json for a batch]
     #[arg(long, value_enum)]
     format: Option<Format>,
@@ -55,7 +64,7 @@ pub(super) struct Flags {
     /// The number of threads [default: all]; the answer does not depend on it
     #[arg(long, value_name = "K", value_parser = clap::value_parser!(u16).range(1..=1024))]
     threads: Option<u16>,
-    /// A seed for chance; seek leaves nothing to chance and says so
+    /// A seed for chance [default: 0]; only near plans leave something to it
     #[arg(long, value_name = "K")]
     seed: Option<u64>,
     /// No account on stderr
@@ -64,7 +73,7 @@ pub(super) struct Flags {
 }
 
 #[derive(Clone, Copy, PartialEq, Eq, ValueEnum)]
-enum Format {
+pub(super) enum Format {
     /// Cells separated by commas under a line of names
     Csv,
     /// One JSON object with the array, its floor, recipe and certificate
@@ -75,7 +84,7 @@ enum Format {
 
 pub(super) fn run(flags: &Flags) -> Result<ExitCode, Failure> {
     let format = format(flags)?;
-    let inputs: Vec<&str> = flags.batch.as_deref().into_iter().collect();
+    let inputs: Vec<&str> = flags.batch.as_deref().into_iter().chain(flags.keep.as_deref()).collect();
     output::distinct(&inputs, &[flags.out.as_deref(), flags.certificate.as_deref()])?;
     if let Some(file) = &flags.batch {
         return batch::run(file, flags);
@@ -84,38 +93,49 @@ pub(super) fn run(flags: &Flags) -> Result<ExitCode, Failure> {
         return Err(Failure::usage("--certificate needs a file: stdout is for the array"));
     }
     let request = request(flags.request(flags::mix(&flags.mix)?))?;
-    let mut out = Output::open(flags.out.as_deref())?;
+    if let Some(budget) = flags.budget {
+        return near::run(flags, request, budget, format);
+    }
+    let out = Output::open(flags.out.as_deref())?;
     let certificate = flags.certificate.as_deref().map(|name| Output::open(Some(name))).transpose()?;
     let outcome = flags::on_threads(flags.threads, || {
         let _progress = Progress::start("looking for an array", None, flags.quiet);
         Ok(seek(&request)?)
     })?;
+    deliver(flags, format, &request, &outcome, out, certificate)
+}
+
+/// Writes what became of a request where it belongs, and says the rest.
+pub(super) fn deliver(
+    flags: &Flags,
+    format: Format,
+    request: &Request,
+    outcome: &Outcome,
+    mut out: Output,
+    certificate: Option<Output>,
+) -> Result<ExitCode, Failure> {
     if format == Format::Json {
-        let document = SeekDocument::new(&request, &outcome, flags.symbols);
+        let document = SeekDocument::new(request, outcome, flags.symbols);
         out.write(|out| {
             serde_json::to_writer(&mut *out, &document)?;
             out.write_all(b"\n")
         })?;
     }
-    let answer = match &outcome {
+    let answer = match outcome {
         Outcome::Found(answer) => answer,
         Outcome::ProvedImpossible { floor } => {
             // With JSON the file asked for holds the answer, which is no.
             let written = if format == Format::Json { out.finish() } else { Ok(()) };
-            flags.say(&impossible(&request, floor));
+            flags.say(&impossible(request, floor));
             return written.map(|()| ExitCode::No);
         }
         Outcome::LimitReached { floor, .. } => {
             let written = if format == Format::Json { out.finish() } else { Ok(()) };
-            flags.say(&limit(&request, floor));
+            flags.say(&limit(request, floor));
             return written.map(|()| ExitCode::Stopped);
         }
     };
-    match format {
-        Format::Csv => out.write(|out| csv::write(&answer.array, flags.symbols, Header::Default, out))?,
-        Format::Text => out.write(|out| text::write(&answer.array, flags.symbols, Header::Default, out))?,
-        Format::Json => true,
-    };
+    write_cells(flags, format, &answer.array, &mut out)?;
     if let Some(mut certificate) = certificate {
         certificate.write(|out| out.write_all(answer.certificate.to_json().as_bytes()))?;
         certificate.finish()?;
@@ -123,6 +143,21 @@ pub(super) fn run(flags: &Flags) -> Result<ExitCode, Failure> {
     out.finish()?;
     flags.say(&account(answer, flags));
     Ok(ExitCode::Yes)
+}
+
+/// Writes an array as cells, unless a JSON object holds it.
+pub(super) fn write_cells(
+    flags: &Flags,
+    format: Format,
+    array: &Array,
+    out: &mut Output,
+) -> Result<(), Failure> {
+    match format {
+        Format::Csv => out.write(|out| csv::write(array, flags.symbols, Header::Default, out))?,
+        Format::Text => out.write(|out| text::write(array, flags.symbols, Header::Default, out))?,
+        Format::Json => true,
+    };
+    Ok(())
 }
 
 fn format(flags: &Flags) -> Result<Format, Failure> {
@@ -165,6 +200,18 @@ impl Flags {
 
     pub(super) fn out(&self) -> Option<&str> {
         self.out.as_deref()
+    }
+
+    pub(super) fn keep(&self) -> Option<&str> {
+        self.keep.as_deref()
+    }
+
+    pub(super) fn seed(&self) -> Option<u64> {
+        self.seed
+    }
+
+    pub(super) fn wants_certificate(&self) -> bool {
+        self.certificate.is_some()
     }
 
     pub(super) fn threads(&self) -> Option<u16> {
@@ -247,12 +294,9 @@ fn account(answer: &Answer, flags: &Flags) -> String {
         lines.push(("seed", format!("{seed} was not needed: nothing was left to chance")));
     }
     lines.push(("check again", check_again(answer, flags)));
-    lines.push(("before use", CAUTION.to_owned()));
+    lines.push(("before use", words::CAUTION.to_owned()));
     words::labelled(&lines)
 }
-
-const CAUTION: &str = "the runs combine settings nobody may have run together: check each one against the\n\
-                       limits of the equipment, local rules and the judgement of whoever is licensed to run it";
 
 fn check_again(answer: &Answer, flags: &Flags) -> String {
     let file = flags.out.as_deref().filter(|n| *n != "-").map_or("FILE".into(), words::quoted);

@@ -1,6 +1,10 @@
 use crate::floor::{Bound, Proof};
 use crate::verify::{Certificate, Engine, StrengthClaim};
 
+/// What is to be said beside every plan.
+pub(super) const CAUTION: &str = "the runs combine settings nobody may have run together: check each one against the\n\
+                       limits of the equipment, local rules and the judgement of whoever is licensed to run it";
+
 /// `1 run`, `2 runs`.
 pub(super) fn count(n: u64, what: &str) -> String {
     if n == 1 { format!("1 {what}") } else { format!("{n} {what}s") }

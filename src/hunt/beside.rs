@@ -11,11 +11,12 @@ use std::collections::HashSet;
 use rayon::prelude::*;
 
 use super::clique::Clique;
+use super::effort::Effort;
 use super::frame;
 use super::halves::Halves;
 use super::random::Random;
 use super::splits::{Move, Orbit, Split, orbit};
-use super::symmetric::{SymmetricHunt, hunt};
+use super::symmetric::{Motion, SymmetricHunt, attempts};
 use crate::construct::{OrbitColumn, orbit_array};
 
 /// The columns that come first.
@@ -33,7 +34,7 @@ pub enum Base {
         levels: Vec<u16>,
         /// How many coordinates of the frame are the group.
         coordinates: usize,
-        /// Whether the generators must move the levels, see [`SymmetricHunt::moving`].
+        /// Whether the generators must move the levels, see [`Motion::Every`].
         moving: bool,
     },
 }
@@ -112,24 +113,14 @@ struct Start {
 /// ```
 #[must_use]
 pub fn hunt_beside(request: &BesideHunt) -> Option<Beside> {
-    let elements = frame::group(&request.frame, &request.symmetry)?;
-    let runs = request.frame.iter().map(|&r| usize::from(r)).product();
-    let all = u128::MAX >> (128 - runs);
-    let setting = Setting { request, runs, all, moves: frame::moves(&elements), elements };
-    let fixed = match &request.base {
-        Base::Forms(forms) => Some(setting.start(setting.forms(forms)?, &mut Random::new(request.seed))?),
-        Base::Given(columns) => {
-            let base = setting.fitting(columns.clone())?;
-            Some(setting.start(base, &mut Random::new(request.seed))?)
-        }
-        Base::Random { .. } => None,
-    };
+    let setting = Setting::new(request)?;
+    let fixed = setting.fixed(&mut Effort::unlimited())?;
     let mut best: Option<Beside> = None;
     let mut first = 0;
     while first < request.attempts {
         let round: Vec<Option<Beside>> = (first..(first + ROUND).min(request.attempts))
             .into_par_iter()
-            .map(|attempt| setting.attempt(fixed.as_ref(), attempt))
+            .map(|attempt| setting.attempt(fixed.as_ref(), attempt, &mut Effort::unlimited()))
             .collect();
         for found in round.into_iter().flatten() {
             if found.complete {
@@ -144,7 +135,53 @@ pub fn hunt_beside(request: &BesideHunt) -> Option<Beside> {
     best
 }
 
-impl Setting<'_> {
+/// The attempts of a hunt one after the other, on one thread, until one finds all columns or the
+/// effort is used up; the best that was met, `None` as for [`hunt_beside`].
+///
+/// A step of the effort is a look at a candidate.
+#[must_use]
+pub fn attempts_beside(request: &BesideHunt, effort: &mut Effort<'_>) -> Option<Beside> {
+    let setting = Setting::new(request)?;
+    let fixed = setting.fixed(effort)?;
+    let mut best: Option<Beside> = None;
+    for attempt in 0..request.attempts {
+        if !effort.spend(1) {
+            break;
+        }
+        let Some(found) = setting.attempt(fixed.as_ref(), attempt, effort) else { continue };
+        if best.as_ref().is_none_or(|b| b.beside < found.beside || found.complete) {
+            best = Some(found);
+        }
+        if best.as_ref().is_some_and(|b| b.complete) {
+            break;
+        }
+    }
+    best
+}
+
+impl<'a> Setting<'a> {
+    fn new(request: &'a BesideHunt) -> Option<Self> {
+        let elements = frame::group(&request.frame, &request.symmetry)?;
+        let runs = request.frame.iter().map(|&r| usize::from(r)).product();
+        let all = u128::MAX >> (128 - runs);
+        Some(Self { request, runs, all, moves: frame::moves(&elements), elements })
+    }
+
+    /// The start that all attempts share, if the base is given; `None` when it does not fit.
+    fn fixed(&self, effort: &mut Effort<'_>) -> Option<Option<Start>> {
+        match &self.request.base {
+            Base::Forms(forms) => {
+                let mut random = Random::new(self.request.seed);
+                Some(Some(self.start(self.forms(forms)?, &mut random, effort)?))
+            }
+            Base::Given(columns) => {
+                let mut random = Random::new(self.request.seed);
+                Some(Some(self.start(self.fitting(columns.clone())?, &mut random, effort)?))
+            }
+            Base::Random { .. } => Some(None),
+        }
+    }
+
     fn forms(&self, forms: &[(u16, Vec<u16>)]) -> Option<Vec<(u16, Vec<u8>)>> {
         let column = |(levels, shifts): &(u16, Vec<u16>)| OrbitColumn {
             levels: *levels,
@@ -182,35 +219,51 @@ impl Setting<'_> {
         coordinates: usize,
         moving: bool,
         attempt: u64,
+        effort: &mut Effort<'_>,
     ) -> Option<Vec<(u16, Vec<u8>)>> {
         let group = self.request.frame.get(..coordinates)?;
         let base = SymmetricHunt {
             runs: self.runs as u32,
             levels: levels.to_vec(),
+            strength: 2,
             group: group.to_vec(),
             fixed: vec![],
-            moving,
+            motion: if moving { Motion::Every } else { Motion::Any },
+            elementary: false,
             seed: self.request.seed ^ attempt.wrapping_mul(0x9FB2_1C65_1E98_DF25),
             attempts: 8,
             pool: 60,
+            exchanges: 0,
         };
-        let found = hunt(&base, None).filter(|f| f.complete)?;
+        let found = attempts(&base, effort).filter(|f| f.complete)?;
         self.expand(group, &found.columns)
     }
 
-    fn start(&self, base: Vec<(u16, Vec<u8>)>, random: &mut Random) -> Option<Start> {
-        let pool = self.pool(&base, random)?;
+    fn start(
+        &self,
+        base: Vec<(u16, Vec<u8>)>,
+        random: &mut Random,
+        effort: &mut Effort<'_>,
+    ) -> Option<Start> {
+        let pool = self.pool(&base, random, effort)?;
         Some(Start { base, pool })
     }
 
     /// The orbits orthogonal to given columns.
-    fn pool(&self, given: &[(u16, Vec<u8>)], random: &mut Random) -> Option<Vec<Orbit>> {
+    fn pool(
+        &self,
+        given: &[(u16, Vec<u8>)],
+        random: &mut Random,
+        effort: &mut Effort<'_>,
+    ) -> Option<Vec<Orbit>> {
         let mut pool = Vec::new();
         for (levels, wanted) in [(2, self.request.wanted[0]), (3, self.request.wanted[1])] {
             if wanted == 0 {
                 continue;
             }
             let halves = Halves::new(given, levels, random)?;
+            // The lists of halves are sorted once.
+            effort.spend(20 * halves.size());
             let mut seen: HashSet<Split> = HashSet::new();
             halves.visit(self.request.looks, random, |split| {
                 if let Some(orbit) = orbit(split, &self.moves, self.runs as u32, self.all)
@@ -218,18 +271,19 @@ impl Setting<'_> {
                 {
                     pool.push(orbit);
                 }
-                pool.len() >= POOL
+                !effort.spend(8) || pool.len() >= POOL
             });
         }
         Some(pool)
     }
 
-    fn attempt(&self, fixed: Option<&Start>, attempt: u64) -> Option<Beside> {
+    fn attempt(&self, fixed: Option<&Start>, attempt: u64, effort: &mut Effort<'_>) -> Option<Beside> {
         let request = self.request;
         let mut random = Random::new(request.seed ^ attempt.wrapping_mul(0xD1B5_4A32_D192_ED03));
         let drawn = match (&request.base, fixed) {
             (Base::Random { levels, coordinates, moving }, None) => {
-                Some(self.start(self.draw(levels, *coordinates, *moving, attempt)?, &mut random)?)
+                let base = self.draw(levels, *coordinates, *moving, attempt, effort)?;
+                Some(self.start(base, &mut random, effort)?)
             }
             _ => None,
         };
@@ -238,7 +292,7 @@ impl Setting<'_> {
         let mut chosen: Vec<Split> = Vec::new();
         let mut wanted = request.wanted;
         if request.start > 0 {
-            let first = clique(pool, wanted).greedy(request.start, &mut random);
+            let first = clique(pool, wanted).greedy(request.start, &mut random, effort);
             chosen.extend(first.iter().flat_map(|&v| pool[v].iter().copied()));
             for split in &chosen {
                 let kind = usize::from(split.levels) - 2;
@@ -248,11 +302,11 @@ impl Setting<'_> {
                 .iter()
                 .map(|c| (u16::from(c.levels), c.symbols(self.runs).iter().map(|&x| x as u8).collect()));
             let given: Vec<(u16, Vec<u8>)> = base.iter().cloned().chain(more).collect();
-            let pool = self.pool(&given, &mut random)?;
-            let rest = clique(&pool, wanted).search(request.steps, &mut random);
+            let pool = self.pool(&given, &mut random, effort)?;
+            let rest = clique(&pool, wanted).search(request.steps, &mut random, effort);
             chosen.extend(rest.iter().flat_map(|&v| pool[v].iter().copied()));
         } else {
-            let rest = clique(pool, wanted).search(request.steps, &mut random);
+            let rest = clique(pool, wanted).search(request.steps, &mut random, effort);
             chosen.extend(rest.iter().flat_map(|&v| pool[v].iter().copied()));
         }
         Some(self.result(base, &chosen, attempt))

@@ -1,5 +1,6 @@
 //! Cliques of orbits: greedy start, then exchanges with a tabu list.
 
+use super::effort::Effort;
 use super::random::Random;
 use super::splits::{Orbit, joined};
 
@@ -39,7 +40,7 @@ impl Clique<'_> {
     }
 
     /// The best clique met in `steps` moves, at once when it is complete.
-    pub(super) fn search(&self, steps: u64, random: &mut Random) -> Vec<usize> {
+    pub(super) fn search(&self, steps: u64, random: &mut Random, effort: &mut Effort<'_>) -> Vec<usize> {
         let goal = self.wanted[0] + self.wanted[1];
         let (mut best, mut most) = (Vec::new(), 0);
         let mut state = State {
@@ -65,7 +66,7 @@ impl Clique<'_> {
             if score > most {
                 (best, most) = (state.chosen.clone(), score);
             }
-            if most >= goal || self.pool.is_empty() {
+            if most >= goal || self.pool.is_empty() || !effort.spend(4 * self.pool.len() as u64) {
                 break;
             }
         }
@@ -73,10 +74,10 @@ impl Clique<'_> {
     }
 
     /// The greedy start alone: orbits until at least `columns` columns are chosen or none is left.
-    pub(super) fn greedy(&self, columns: usize, random: &mut Random) -> Vec<usize> {
+    pub(super) fn greedy(&self, columns: usize, random: &mut Random, effort: &mut Effort<'_>) -> Vec<usize> {
         let mut open: Vec<usize> = (0..self.pool.len()).collect();
         let (mut chosen, mut count) = (Vec::new(), 0);
-        while count < columns && !open.is_empty() {
+        while count < columns && !open.is_empty() && effort.spend(2 * open.len() as u64) {
             let v = self.pick(&open, random);
             chosen.push(v);
             count += self.pool[v].len();
@@ -163,13 +164,13 @@ mod tests {
             (0..256u128).filter(|m| m & 1 == 1 && m.count_ones() == 4).map(split).collect();
         assert_eq!(pool.len(), 35);
         let clique = |wanted| Clique { runs: 8, pool: &pool, wanted: [wanted, 0] };
-        let found = clique(8).search(500, &mut Random::new(1));
+        let found = clique(8).search(500, &mut Random::new(1), &mut Effort::unlimited());
         assert_eq!(found.len(), 7);
         for (i, &v) in found.iter().enumerate() {
             assert!(found[..i].iter().all(|&w| joined(&pool[v], &pool[w], 8)));
         }
-        assert_eq!(clique(8).greedy(3, &mut Random::new(1)).len(), 3);
+        assert_eq!(clique(8).greedy(3, &mut Random::new(1), &mut Effort::unlimited()).len(), 3);
         let none = Clique { runs: 8, pool: &[], wanted: [1, 0] };
-        assert!(none.search(10, &mut Random::new(1)).is_empty());
+        assert!(none.search(10, &mut Random::new(1), &mut Effort::unlimited()).is_empty());
     }
 }

@@ -81,6 +81,11 @@ impl Halves {
         }
     }
 
+    /// How many halves there are.
+    pub(super) fn size(&self) -> u64 {
+        (self.left.len() + self.right.len()) as u64
+    }
+
     fn join(&self, i: usize, j: usize) -> Split {
         let (a, b) = (&self.left[i].masks, &self.right[j].masks);
         Split { masks: [a[0] | b[0], a[1] | b[1]], levels: self.levels }

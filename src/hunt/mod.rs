@@ -4,10 +4,14 @@
 //! | --- | --- |
 //! | `beside` | columns of two and three levels beside given ones, under a group that permutes them |
 //! | `blocks` | two-level columns beside one p-level column in 4p runs |
+//! | `campaign` | a hunt as a list of tasks: several methods and groups in turn, resumable, in parts |
 //! | `circulants` | four rows for the array of Goethals and Seidel |
 //! | `effort` | the budget of a search, in steps |
+//! | `exact` | arrays with a prescribed group, or the proof that there are none |
+//! | `extend` | further columns for a given array, or the proof that there are none |
 //! | `flats` | slices, unions of flats, that are an array of strength 3 together |
 //! | `latin` | quasi-difference matrices and V vectors |
+//! | `near` | plans for a budget that no array fits |
 //! | `quadratics` | difference schemes over Z3 in blocks of order 3 |
 //! | `schemes` | difference schemes with a prescribed symmetry |
 //! | `slices` | slices of 16 runs from Hadamard matrices, an array of strength 3 together |
@@ -24,13 +28,17 @@
 
 pub mod beside;
 pub mod blocks;
+pub mod campaign;
 mod circulants;
 mod clique;
 mod effort;
+pub mod exact;
+pub mod extend;
 pub mod flats;
 mod frame;
 mod halves;
 pub mod latin;
+pub mod near;
 mod quadratics;
 mod random;
 mod schemes;

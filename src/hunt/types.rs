@@ -20,6 +20,7 @@ pub use group::Turn;
 use self::group::{Element, classes, group};
 use self::words::{Word, visit};
 use super::clique::Clique;
+use super::effort::Effort;
 use super::random::Random;
 use super::splits::{Orbit, Split};
 use crate::construct::OrbitColumn;
@@ -244,6 +245,7 @@ impl Setting<'_> {
 
     fn attempt(&self, attempt: u64) -> Types {
         let mut random = Random::new(self.request.seed ^ attempt.wrapping_mul(0xD1B5_4A32_D192_ED03));
+        let mut effort = Effort::unlimited();
         let mut chosen: Vec<Word> = Vec::new();
         let wanted = self.request.wanted;
         let mut pool = self.pool(&[], &mut random);
@@ -251,7 +253,7 @@ impl Setting<'_> {
             let splits = self.splits(&pool);
             let left = wanted.saturating_sub(chosen.len());
             let clique = Clique { runs: 4 * self.p as u32, pool: &splits, wanted: [left, 0] };
-            for v in clique.greedy(stage.saturating_sub(chosen.len()), &mut random) {
+            for v in clique.greedy(stage.saturating_sub(chosen.len()), &mut random, &mut effort) {
                 chosen.extend(pool[v].iter().copied());
             }
             pool = self.pool(&chosen, &mut random);
@@ -259,7 +261,7 @@ impl Setting<'_> {
         let splits = self.splits(&pool);
         let left = wanted.saturating_sub(chosen.len());
         let clique = Clique { runs: 4 * self.p as u32, pool: &splits, wanted: [left, 0] };
-        for v in clique.search(self.request.steps, &mut random) {
+        for v in clique.search(self.request.steps, &mut random, &mut effort) {
             chosen.extend(pool[v].iter().copied());
         }
         chosen.truncate(wanted);

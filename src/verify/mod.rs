@@ -4,7 +4,7 @@
 //! definition and gives the witness when the answer is no, [`distance`] goes by the dual
 //! distribution and gives the word-length pattern beside the strength. [`certify`] picks by cost,
 //! or runs both; the [`Certificate`] it hands out can be checked again by [`recheck`], which
-//! trusts nothing in it.
+//! trusts nothing in it. [`nearness()`] says by stated criteria how far an array is from orthogonal.
 //!
 //! ```
 //! use trysquare::{array::Array, verify::{Demand, Verdict, certify, recheck}};
@@ -27,11 +27,15 @@ pub mod counting;
 pub mod digest;
 pub mod distance;
 mod evidence;
+mod nearness;
 mod recheck;
 
 pub use certificate::{CERTIFICATE_VERSION, Certificate, CertificateError, StrengthClaim};
 pub use choice::Engine;
 pub use evidence::{Ratio, Witness};
+pub use nearness::{
+    ByPairs, Correlation, Efficiency, MOST_PARAMETERS, MOST_STEPS, Nearness, WorstPair, nearness,
+};
 pub use recheck::{Field, Mismatch, RecheckReport, recheck};
 
 /// Why no verdict can be given.

@@ -22,7 +22,7 @@ Run;oven;temperature;mould
 fn help() {
     let bench = Bench::new();
     assert_snapshot!("help", bench.show(&["--help"]));
-    for command in ["seek", "certify", "recheck", "floor", "catalog"] {
+    for command in ["seek", "certify", "recheck", "floor", "catalog", "hunt"] {
         assert_snapshot!(format!("help_{command}"), bench.show(&[command, "--help"]));
     }
     assert_snapshot!("version", bench.show(&["--version"]));

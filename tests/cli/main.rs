@@ -9,4 +9,6 @@ mod batch;
 mod bench;
 mod commands;
 mod files;
+mod hunt;
+mod near;
 mod schema;

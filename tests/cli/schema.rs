@@ -5,7 +5,8 @@ use std::path::Path;
 use schemars::{JsonSchema, schema_for};
 use serde_json::{Value, json};
 use trysquare::exchange::document::{
-    CatalogDocument, CertifyDocument, FloorDocument, RecheckDocument, SeekDocument,
+    CatalogDocument, CertifyDocument, ExtendDocument, FloorDocument, HuntDocument, NearDocument,
+    RecheckDocument, SeekDocument,
 };
 use trysquare::floor::Proof;
 use trysquare::verify::Certificate;
@@ -18,13 +19,16 @@ fn schema<T: JsonSchema>() -> Value {
     schema
 }
 
-fn schemas() -> [(&'static str, Value); 7] {
+fn schemas() -> [(&'static str, Value); 10] {
     [
         ("seek", schema::<SeekDocument<'_>>()),
+        ("near", schema::<NearDocument<'_>>()),
         ("certify", schema::<CertifyDocument<'_>>()),
         ("recheck", schema::<RecheckDocument<'_>>()),
         ("floor", schema::<FloorDocument<'_>>()),
         ("catalog", schema::<CatalogDocument<'_>>()),
+        ("extend", schema::<ExtendDocument<'_>>()),
+        ("hunt", schema::<HuntDocument<'_>>()),
         ("certificate", schema::<Certificate>()),
         ("proof", schema::<Proof>()),
     ]

@@ -1,12 +1,13 @@
 //! The next column, solved for.
 
-use super::{Column, Setting};
+use super::{Setting, Test};
+use crate::hunt::effort::Effort;
 use crate::hunt::random::Random;
 
-/// Backtracking over the orbits for one column orthogonal to all chosen ones.
+/// Backtracking over the orbits for one column orthogonal to all tests.
 pub(super) struct Solver<'a> {
     setting: &'a Setting,
-    chosen: &'a [Column],
+    chosen: &'a [Test],
     s: u16,
     /// For each chosen column how often each pair of levels may occur; `None` if it cannot be even.
     limits: Option<Vec<u16>>,
@@ -19,13 +20,13 @@ impl<'a> Solver<'a> {
     /// A solution that needs more steps than this is given up.
     const STEPS: usize = 4000;
 
-    pub(super) fn new(setting: &'a Setting, chosen: &'a [Column], s: u16) -> Self {
+    pub(super) fn new(setting: &'a Setting, chosen: &'a [Test], s: u16) -> Self {
         let runs = setting.runs;
         let (mut offsets, mut size) = (Vec::new(), 0);
         let mut limits = Some(Vec::new());
         for c in chosen {
             offsets.push(size);
-            let pairs = usize::from(c.stored.levels) * usize::from(s);
+            let pairs = usize::from(c.levels) * usize::from(s);
             size += pairs;
             match &mut limits {
                 Some(l) if runs.is_multiple_of(pairs) => l.push((runs / pairs) as u16),
@@ -40,18 +41,27 @@ impl<'a> Solver<'a> {
         Self { setting, chosen, s, limits, offsets, counters: vec![0; size] }
     }
 
-    pub(super) fn solve(&mut self, shifts: &[u16], random: &mut Random) -> Option<Vec<u16>> {
+    pub(super) fn solve(
+        &mut self,
+        shifts: &[u16],
+        random: &mut Random,
+        effort: &mut Effort<'_>,
+    ) -> Option<Vec<u16>> {
         let limits = self.limits.clone()?;
         self.counters.fill(0);
         let (orbits, s) = (self.setting.orbits, usize::from(self.s));
-        let shift: Vec<usize> =
-            (0..self.setting.order).map(|g| self.setting.shift(shifts, g, self.s)).collect();
+        // What each element of the group makes of each symbol.
+        let shift = self.setting.shifts(shifts, self.s);
+        let images: Vec<Vec<usize>> = (0..self.s)
+            .map(|b| shift.iter().map(|&x| usize::from(self.setting.add(self.s, b, x))).collect())
+            .collect();
         let mut order: Vec<usize> = (0..orbits).collect();
         random.shuffle(&mut order);
         // The untried symbols of each orbit on the way, and the one in place.
         let mut open: Vec<Vec<u16>> = vec![vec![0]];
         let mut base = vec![0u16; orbits];
         let mut steps = 0;
+        let cost = (self.setting.order * (1 + self.chosen.len())) as u64;
         let mut depth = 0;
         loop {
             let o = order[depth];
@@ -62,17 +72,17 @@ impl<'a> Solver<'a> {
                         return None;
                     }
                     depth -= 1;
-                    self.count(order[depth], base[order[depth]], &shift, false);
+                    self.count(order[depth], &images[usize::from(base[order[depth]])], false);
                 }
                 Some(b) => {
                     steps += 1;
-                    if steps > Self::STEPS {
+                    if steps > Self::STEPS || !effort.spend(cost) {
                         return None;
                     }
                     base[o] = b;
-                    self.count(o, b, &shift, true);
-                    if !self.within(o, b, &shift, &limits) {
-                        self.count(o, b, &shift, false);
+                    self.count(o, &images[usize::from(b)], true);
+                    if !self.within(o, &images[usize::from(b)], &limits) {
+                        self.count(o, &images[usize::from(b)], false);
                         continue;
                     }
                     depth += 1;
@@ -87,11 +97,10 @@ impl<'a> Solver<'a> {
         }
     }
 
-    /// Puts orbit `o` with symbol `b` into the counters or takes it out.
-    fn count(&mut self, o: usize, b: u16, shift: &[usize], into: bool) {
+    /// Puts orbit `o` with the symbols of its runs into the counters or takes it out.
+    fn count(&mut self, o: usize, symbols: &[usize], into: bool) {
         let s = usize::from(self.s);
-        for (g, &x) in shift.iter().enumerate() {
-            let symbol = (usize::from(b) + x) % s;
+        for (g, &symbol) in symbols.iter().enumerate() {
             let run = o * self.setting.order + g;
             for (c, &offset) in self.chosen.iter().zip(&self.offsets) {
                 let at = offset + usize::from(c.symbols[run]) * s + symbol;
@@ -103,10 +112,9 @@ impl<'a> Solver<'a> {
     }
 
     /// Whether the counters that orbit `o` touches are within their limits.
-    fn within(&self, o: usize, b: u16, shift: &[usize], limits: &[u16]) -> bool {
+    fn within(&self, o: usize, symbols: &[usize], limits: &[u16]) -> bool {
         let s = usize::from(self.s);
-        shift.iter().enumerate().all(|(g, &x)| {
-            let symbol = (usize::from(b) + x) % s;
+        symbols.iter().enumerate().all(|(g, &symbol)| {
             let run = o * self.setting.order + g;
             let alone = self.chosen.len();
             self.counters[self.offsets[alone] + symbol] <= limits[alone]
