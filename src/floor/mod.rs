@@ -10,6 +10,7 @@
 pub mod proof;
 
 mod divisibility;
+mod effort;
 mod pure;
 mod rao;
 
@@ -17,6 +18,7 @@ use thiserror::Error;
 
 use crate::mix::Mix;
 pub use divisibility::divisibility;
+pub use effort::Effort;
 pub use proof::{Bound, Proof, ProofError};
 pub use pure::{bose_bush, bush};
 pub use rao::rao;

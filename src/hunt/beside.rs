@@ -11,13 +11,13 @@ use std::collections::HashSet;
 use rayon::prelude::*;
 
 use super::clique::Clique;
-use super::effort::Effort;
 use super::frame;
 use super::halves::Halves;
 use super::random::Random;
 use super::splits::{Move, Orbit, Split, orbit};
 use super::symmetric::{Motion, SymmetricHunt, attempts};
 use crate::construct::{OrbitColumn, orbit_array};
+use crate::floor::Effort;
 
 /// The columns that come first.
 #[derive(Clone, Debug)]

@@ -1,8 +1,8 @@
 //! Cliques of orbits: greedy start, then exchanges with a tabu list.
 
-use super::effort::Effort;
 use super::random::Random;
 use super::splits::{Orbit, joined};
+use crate::floor::Effort;
 
 /// Orbits of columns among which those that go together are looked for.
 pub(super) struct Clique<'a> {

@@ -6,7 +6,6 @@
 //! | `blocks` | two-level columns beside one p-level column in 4p runs |
 //! | `campaign` | a hunt as a list of tasks: several methods and groups in turn, resumable, in parts |
 //! | `circulants` | four rows for the array of Goethals and Seidel |
-//! | `effort` | the budget of a search, in steps |
 //! | `exact` | arrays with a prescribed group, or the proof that there are none |
 //! | `extend` | further columns for a given array, or the proof that there are none |
 //! | `flats` | slices, unions of flats, that are an array of strength 3 together |
@@ -31,7 +30,6 @@ pub mod blocks;
 pub mod campaign;
 mod circulants;
 mod clique;
-mod effort;
 pub mod exact;
 pub mod extend;
 pub mod flats;
@@ -50,8 +48,8 @@ mod t_matrices;
 pub mod types;
 mod write;
 
+pub use crate::floor::Effort;
 pub use circulants::FourCirculants;
-pub use effort::Effort;
 pub use quadratics::Quadratics;
 pub use random::Random;
 pub use schemes::{SchemeHunt, Symmetry};

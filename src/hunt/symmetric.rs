@@ -15,10 +15,10 @@ use rayon::prelude::*;
 
 use self::solver::Solver;
 use super::clique::Clique;
-use super::effort::Effort;
 use super::random::Random;
 use super::splits::{Orbit, Split};
 use crate::construct::OrbitColumn;
+use crate::floor::Effort;
 
 /// The largest number of runs that is searched.
 pub const MAX_RUNS: u32 = 128;

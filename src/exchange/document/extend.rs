@@ -103,7 +103,7 @@ impl KindPart {
         match (self.added, self.standing) {
             (0, KindStanding::Maximum) => "none exists (proved)".to_owned(),
             (0, _) => "none met; not decided".to_owned(),
-            (n, KindStanding::Complete) => format!("all {n} added"),
+            (n, KindStanding::Complete) => format!("{n} added, as asked"),
             (n, KindStanding::Maximum) => format!("{n} added, more are impossible (proved)"),
             (n, KindStanding::Maximal) => {
                 format!("{n} added, none fits beside these (proved); others may be more")

@@ -7,9 +7,9 @@
 use super::request::{HuntRequest, Symmetry, group_name};
 use super::state::Placed;
 use crate::construct::{OrbitColumn, block_types, field::flats};
+use crate::floor::Effort;
 use crate::hunt::beside::{Base, BesideHunt, attempts_beside};
 use crate::hunt::blocks::{BlockSearch, blocks};
-use crate::hunt::effort::Effort;
 use crate::hunt::exact::{self, ExactHunt, decide};
 use crate::hunt::random::Random;
 use crate::hunt::slices;

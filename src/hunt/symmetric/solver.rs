@@ -1,7 +1,7 @@
 //! The next column, solved for.
 
 use super::{Setting, Test};
-use crate::hunt::effort::Effort;
+use crate::floor::Effort;
 use crate::hunt::random::Random;
 
 /// Backtracking over the orbits for one column orthogonal to all tests.
