@@ -20,10 +20,10 @@ pub use group::Turn;
 use self::group::{Element, classes, group};
 use self::words::{Word, visit};
 use super::clique::Clique;
-use super::effort::Effort;
 use super::random::Random;
 use super::splits::{Orbit, Split};
 use crate::construct::OrbitColumn;
+use crate::floor::Effort;
 
 /// What is looked for.
 #[derive(Clone, Debug)]
