@@ -15,7 +15,7 @@ use super::frame;
 use super::halves::Halves;
 use super::random::Random;
 use super::splits::{Move, Orbit, Split, orbit};
-use super::symmetric::{Motion, SymmetricHunt, attempts};
+use super::symmetric::{Motion, STEPS, SymmetricHunt, attempts};
 use crate::construct::{OrbitColumn, orbit_array};
 use crate::floor::Effort;
 
@@ -233,6 +233,7 @@ impl<'a> Setting<'a> {
             seed: self.request.seed ^ attempt.wrapping_mul(0x9FB2_1C65_1E98_DF25),
             attempts: 8,
             pool: 60,
+            steps: STEPS,
             exchanges: 0,
         };
         let found = attempts(&base, effort).filter(|f| f.complete)?;
