@@ -7,6 +7,7 @@
 //! | [`bose_bush`] | sharper than Rao for factors of one number of levels, s − 1 ∤ λ − 1 | 3^8, 4^10, … |
 //! | [`bush`] | index 1 allows few factors | s^k just above s + t − 1 |
 
+pub mod exhaustion;
 pub mod proof;
 
 mod divisibility;
