@@ -17,14 +17,14 @@
 mod canonical;
 mod census;
 mod columns;
-//mod decide;
-//pub mod latin;
+mod decide;
+pub mod latin;
 mod meter;
 mod orbits;
-//mod record;
+mod record;
 mod refine;
 mod sketch;
-//mod stored;
+mod stored;
 #[cfg(test)]
 mod tests;
 mod text;
@@ -32,10 +32,10 @@ mod text;
 use thiserror::Error;
 
 pub use census::{CENSUS_VERSION, Census, Progress, Stage, classes};
-//pub use decide::{Decision, decide};
-//pub use record::{ByColumns, Claim, RECORD_VERSION, Record, RecordError};
+pub use decide::{Decision, decide};
+pub use record::{ByColumns, Claim, RECORD_VERSION, Record, RecordError};
 pub use sketch::{MAX_LEVELS, MAX_RUNS};
-//pub use stored::stored;
+pub use stored::stored;
 
 /// Why a question cannot be put to the engine.
 #[derive(Clone, Debug, PartialEq, Eq, Error)]
