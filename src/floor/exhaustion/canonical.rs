@@ -169,8 +169,8 @@ impl Search<'_, '_> {
         for (&from, &to) in earlier.iter().zip(&runs) {
             generator[usize::from(from)] = to;
         }
-        let same_way = path.len() == depth
-            && path.iter().zip(&self.path).all(|(&a, &b)| generator[usize::from(a)] == b);
+        let same_way =
+            path.len() == depth && path.iter().zip(&self.path).all(|(&a, &b)| generator[usize::from(a)] == b);
         let shared = path.iter().zip(&self.path).take_while(|(a, b)| a == b).count();
         self.generators.push(generator);
         if same_way { shared } else { depth }

@@ -20,9 +20,12 @@ pub const CENSUS_VERSION: u32 = 1;
 pub(super) const PORTION: usize = 64;
 
 /// The isomorphism classes found so far: a state that can be written, read and gone on from.
+///
+/// What is read has passed these checks: the version, the shape, and that the representatives of
+/// the last stage are arrays of the strength, canonical and all different. That none is missing
+/// cannot be checked but by searching again.
 #[derive(Clone, Debug, PartialEq, Eq, Serialize, Deserialize)]
-#[serde(deny_unknown_fields)]
-#[cfg_attr(feature = "schema", derive(schemars::JsonSchema))]
+#[serde(try_from = "Unchecked")]
 pub struct Census {
     /// [`CENSUS_VERSION`].
     pub(super) version: u32,
@@ -34,6 +37,28 @@ pub struct Census {
     pub(super) order: Vec<u16>,
     /// One for every prefix of `order` that is done.
     pub(super) stages: Vec<Stage>,
+}
+
+/// A census as it was read.
+#[derive(Deserialize)]
+#[serde(deny_unknown_fields, expecting = "an object with the keys of a census")]
+struct Unchecked {
+    version: u32,
+    runs: u32,
+    strength: u32,
+    order: Vec<u16>,
+    stages: Vec<Stage>,
+}
+
+impl TryFrom<Unchecked> for Census {
+    type Error = ExhaustionError;
+
+    fn try_from(read: Unchecked) -> Result<Self, ExhaustionError> {
+        let Unchecked { version, runs, strength, order, stages } = read;
+        let census = Self { version, runs, strength, order, stages };
+        census.check()?;
+        Ok(census)
+    }
 }
 
 /// The isomorphism classes of one prefix of the columns.
@@ -89,7 +114,8 @@ impl Census {
         if strength == 0 || strength as usize > columns {
             return Err(ExhaustionError::Strength { strength, columns });
         }
-        let fits = (1..=MAX_RUNS as u32).contains(&runs) && order.iter().all(|s| (2..=MAX_LEVELS).contains(s));
+        let fits =
+            (1..=MAX_RUNS as u32).contains(&runs) && order.iter().all(|s| (2..=MAX_LEVELS).contains(s));
         if !fits || columns > MAX_RUNS {
             return Err(ExhaustionError::TooLarge);
         }
@@ -114,6 +140,22 @@ impl Census {
         self.stages.len() == self.order.len() || self.stages.last().is_some_and(|stage| stage.classes == 0)
     }
 
+    /// Checks what was read.
+    fn check(&self) -> Result<(), ExhaustionError> {
+        let state = |text: String| Err(ExhaustionError::State(text));
+        if self.version != CENSUS_VERSION {
+            return state(format!("version {} is not known here", self.version));
+        }
+        Self::new(&self.order, self.runs, self.strength)?;
+        let stages = self.stages.len();
+        if stages > self.order.len() || (1..stages).any(|i| self.stages[i - 1].classes == 0) {
+            return state("its stages do not fit its columns".into());
+        }
+        let Some(last) = self.stages.last() else { return Ok(()) };
+        last.check(stages, self, &mut Effort::unlimited())
+            .map_err(|error| ExhaustionError::State(error.to_string()))
+    }
+
     /// The levels of the first `columns` columns, most first, as the representatives have them.
     pub(super) fn levels(&self, columns: usize) -> Vec<u16> {
         let mut levels = self.order[..columns].to_vec();
@@ -125,7 +167,11 @@ impl Census {
     pub(super) fn sketches(&self) -> Vec<Sketch> {
         let levels = self.levels(self.stages.len());
         let texts = self.stages.last().map_or(&[][..], |stage| &stage.representatives);
-        texts.iter().filter_map(|text| from_text(text, &levels, self.runs as usize)).collect()
+        let sketch = |text: &String| {
+            from_text(text, &levels, self.runs as usize)
+                .expect("the texts of a census are checked or its own")
+        };
+        texts.iter().map(sketch).collect()
     }
 
     /// One array of every class of the last stage, columns with most levels first.

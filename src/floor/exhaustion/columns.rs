@@ -38,8 +38,17 @@ pub(super) fn columns(
     let rows = sketch.rows.len();
     let tied = vec![true; (rows + 1) * s];
     let split = vec![0u8; rows * s];
-    let mut search =
-        Search { weights: &sketch.weights, s, cells, left, tied, split, found: Vec::new(), first_only, spend };
+    let mut search = Search {
+        weights: &sketch.weights,
+        s,
+        cells,
+        left,
+        tied,
+        split,
+        found: Vec::new(),
+        first_only,
+        spend,
+    };
     if search.run(0, 0, sketch.weights[0] as u8) { Columns::All(search.found) } else { Columns::Stopped }
 }
 

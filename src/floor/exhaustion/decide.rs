@@ -37,7 +37,7 @@ pub enum Decision {
 /// The same bytes for any number of threads.
 ///
 /// # Errors
-/// As [`Census::new`]; [`ExhaustionError::State`] when `from` is no state of this question.
+/// As [`Census::new`]; [`ExhaustionError::State`] when `from` is about another question.
 ///
 /// # Reference
 /// As [`classes`](super::classes).
@@ -69,7 +69,6 @@ pub fn decide(
     let mut census = match from {
         None => fresh,
         Some(state) => {
-            state.check()?;
             if (&state.order, state.runs, state.strength) != (&order, runs, strength) {
                 return Err(ExhaustionError::State("it is about another question".into()));
             }
@@ -99,9 +98,7 @@ fn last_column(census: &Census, effort: &mut Effort<'_>) -> Option<Option<Array>
     let &last = census.order.last()?;
     if census.stages.is_empty() {
         let runs = census.runs as usize;
-        return Some(
-            runs.is_multiple_of(usize::from(last)).then(|| Sketch::one_column(last, runs).array()),
-        );
+        return Some(runs.is_multiple_of(usize::from(last)).then(|| Sketch::one_column(last, runs).array()));
     }
     let sketches = census.sketches();
     let purse = Purse::new(effort);

@@ -30,6 +30,8 @@ pub struct ByLatinSquares {
     pub with_mates: u64,
     /// The SHA-256 of the squares in ascending order, one line each: its rows separated by dots, a
     /// blank, its number of transversals.
+    pub listing: String,
+    /// The SHA-256 of all the above.
     pub digest: String,
 }
 
@@ -93,14 +95,17 @@ pub fn search(order: u16, effort: &mut Effort<'_>) -> Result<Mates, ExhaustionEr
         total += transversals.len() as u64;
         lines.push(line(square, n, transversals.len()));
     }
-    Ok(Mates::None(Record::LatinSquares(ByLatinSquares {
+    let mut record = ByLatinSquares {
         version: RECORD_VERSION,
         order,
         squares: squares.len() as u64,
         transversals: total,
         with_mates: 0,
-        digest: digest(lines.iter().map(String::as_str)),
-    })))
+        listing: digest(lines.iter().map(String::as_str)),
+        digest: String::new(),
+    };
+    record.digest = record.own_digest();
+    Ok(Mates::None(Record::LatinSquares(record)))
 }
 
 /// The column of the transversal's cell in each row.
@@ -211,6 +216,11 @@ fn line(square: &[u8], n: usize, transversals: usize) -> String {
 }
 
 impl ByLatinSquares {
+    pub(super) fn own_digest(&self) -> String {
+        let Self { version, order, squares, transversals, with_mates, ref listing, .. } = *self;
+        digest([format!("{version} {order} {squares} {transversals} {with_mates} {listing}").as_str()])
+    }
+
     pub(super) fn check_light(&self) -> Result<(), RecordError> {
         if self.version != RECORD_VERSION {
             return Err(RecordError::Version(self.version));
@@ -221,7 +231,7 @@ impl ByLatinSquares {
         if self.squares == 0 || self.with_mates != 0 {
             return Err(RecordError::Squares);
         }
-        if self.digest.len() != 64 || !self.digest.bytes().all(|b| matches!(b, b'0'..=b'9' | b'a'..=b'f')) {
+        if self.digest != self.own_digest() {
             return Err(RecordError::Digest);
         }
         Ok(())

@@ -13,6 +13,8 @@
 //!
 //! [`Record::check_light`] does not prove the claim: that no class was forgotten only shows when
 //! the search is made again, which [`Record::replay`] does without looking at the stored arrays.
+//! The claim reaches further than its mix: there is no array of a mix that has all of these
+//! factors either, nor of a higher strength, at that number of runs.
 
 mod canonical;
 mod census;
@@ -52,7 +54,7 @@ pub enum ExhaustionError {
     /// Too many runs or levels, or a column of fewer than 2 levels.
     #[error("exhaustion takes 1 to {MAX_RUNS} runs and columns of 2 to {MAX_LEVELS} levels")]
     TooLarge,
-    /// A state that is not one of this question, or was changed.
+    /// A state of another question, or one that was changed.
     #[error("this is no state of that search: {0}")]
     State(String),
 }

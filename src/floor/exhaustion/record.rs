@@ -116,6 +116,15 @@ pub enum RecordError {
     Unfinished,
 }
 
+impl Claim {
+    /// The name of its file in `catalog/`.
+    #[must_use]
+    pub fn file_name(&self) -> String {
+        let mix: String = self.mix.counts().iter().rev().map(|(s, k)| format!("-{s}x{k}")).collect();
+        format!("none-{:04}-{}{mix}.json", self.runs, self.strength)
+    }
+}
+
 impl Record {
     /// Reads a record; nothing of it is checked but its shape.
     ///
@@ -178,7 +187,8 @@ impl ByColumns {
     /// The record of a census whose last stage is empty.
     pub(super) fn new(census: &Census) -> Self {
         let mut stages = census.stages.clone();
-        if stages.iter().flat_map(|stage| &stage.representatives).map(String::len).sum::<usize>() > MOST_TEXT {
+        if stages.iter().flat_map(|stage| &stage.representatives).map(String::len).sum::<usize>() > MOST_TEXT
+        {
             stages.iter_mut().for_each(|stage| stage.representatives.clear());
         }
         let Census { runs, strength, ref order, .. } = *census;
@@ -188,7 +198,7 @@ impl ByColumns {
         record
     }
 
-    fn own_digest(&self) -> String {
+    pub(super) fn own_digest(&self) -> String {
         let head = format!("{} {} {} {:?}", self.version, self.runs, self.strength, self.order);
         let stages: Vec<String> = self.stages.iter().map(|s| format!("{} {}", s.classes, s.digest)).collect();
         digest([head.as_str()].into_iter().chain(stages.iter().map(String::as_str)))
@@ -242,7 +252,12 @@ impl ByColumns {
 
 impl Stage {
     /// Checks the representatives of stage `stage` (from 1) of a census.
-    fn check(&self, stage: usize, census: &Census, effort: &mut Effort<'_>) -> Result<(), RecordError> {
+    pub(super) fn check(
+        &self,
+        stage: usize,
+        census: &Census,
+        effort: &mut Effort<'_>,
+    ) -> Result<(), RecordError> {
         let texts = &self.representatives;
         if texts.len() as u64 != self.classes || self.digest != digest(texts.iter().map(String::as_str)) {
             return Err(RecordError::Representatives(stage));
@@ -264,28 +279,5 @@ impl Stage {
             }
         }
         Ok(())
-    }
-}
-
-impl Census {
-    /// Checks a state that was read: version, shape, and everything about the representatives of
-    /// the last stage, from which the search goes on. That no class is missing is not checked.
-    ///
-    /// # Errors
-    /// [`ExhaustionError::State`] with the first rule that is broken, or the error of
-    /// [`Census::new`].
-    pub fn check(&self) -> Result<(), ExhaustionError> {
-        let state = |text: String| Err(ExhaustionError::State(text));
-        if self.version != super::CENSUS_VERSION {
-            return state(format!("version {} is not known here", self.version));
-        }
-        Self::new(&self.order, self.runs, self.strength)?;
-        let stages = self.stages.len();
-        if stages > self.order.len() || (1..stages).any(|i| self.stages[i - 1].classes == 0) {
-            return state("its stages do not fit its columns".into());
-        }
-        let Some(last) = self.stages.last() else { return Ok(()) };
-        last.check(stages, self, &mut Effort::unlimited())
-            .map_err(|error| ExhaustionError::State(error.to_string()))
     }
 }

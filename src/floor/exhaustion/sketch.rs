@@ -1,6 +1,5 @@
 use std::collections::BTreeMap;
 
-use super::ExhaustionError;
 use crate::array::Array;
 use crate::verify::counting::find_violation;
 
@@ -62,18 +61,6 @@ impl Sketch {
             })
         });
         Self::from_rows(all, rows)
-    }
-
-    /// The sketch of an array.
-    ///
-    /// # Errors
-    /// [`ExhaustionError::TooLarge`] above [`MAX_RUNS`] or [`MAX_LEVELS`].
-    pub(super) fn of(array: &Array) -> Result<Self, ExhaustionError> {
-        if array.runs() > MAX_RUNS || array.levels().iter().any(|&s| s > MAX_LEVELS) {
-            return Err(ExhaustionError::TooLarge);
-        }
-        let rows = array.rows().map(|row| (row.into_iter().map(|x| x as u8).collect(), 1));
-        Ok(Self::from_rows(array.levels().to_vec(), rows))
     }
 
     /// The array, runs ascending.
