@@ -23,8 +23,14 @@ const STORED: &[(&str, &str)] = files![
     "none-0027-3-3x5.json",
     "none-0028-2-14x1-2x3.json",
     "none-0036-2-6x4.json",
+    "none-0036-2-18x1-2x3.json",
     "none-0040-3-5x1-2x7.json",
+    "none-0048-3-4x1-3x1-2x5.json",
     "none-0048-3-6x1-4x1-2x3.json",
+    "none-0054-3-3x5-2x2.json",
+    "none-0054-3-3x6.json",
+    "none-0054-3-6x1-3x4.json",
+    "none-0056-3-7x1-2x7.json",
 ];
 
 #[cfg(test)]
@@ -47,8 +53,14 @@ mod tests {
         (27, 3, "3^5", false),
         (28, 2, "14^1 2^3", false),
         (36, 2, "6^4", false),
+        (36, 2, "18^1 2^3", true),
         (40, 3, "5^1 2^7", false),
+        (48, 3, "4^1 3^1 2^5", true),
         (48, 3, "6^1 4^1 2^3", false),
+        (54, 3, "3^5 2^2", true),
+        (54, 3, "3^6", true),
+        (54, 3, "6^1 3^4", false),
+        (56, 3, "7^1 2^7", true),
     ];
 
     fn made(runs: u32, strength: u32, mix: &str) -> Record {
