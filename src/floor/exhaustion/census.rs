@@ -6,6 +6,7 @@ use serde::{Deserialize, Serialize};
 use super::ExhaustionError;
 use super::canonical::canonical;
 use super::columns::{Columns, columns};
+use super::completion::{Completion, completion};
 use super::meter::Purse;
 use super::orbits::orbit_representatives;
 use super::sketch::{MAX_LEVELS, MAX_RUNS, Sketch};
@@ -35,6 +36,9 @@ pub struct Census {
     pub(super) strength: u32,
     /// The levels of the columns, in the order in which they are added.
     pub(super) order: Vec<u16>,
+    /// From how many columns on arrays are closed by cliques, see [`Census::closing`].
+    #[serde(skip_serializing_if = "Option::is_none")]
+    pub(super) close_from: Option<u32>,
     /// One for every prefix of `order` that is done.
     pub(super) stages: Vec<Stage>,
 }
@@ -47,6 +51,8 @@ struct Unchecked {
     runs: u32,
     strength: u32,
     order: Vec<u16>,
+    #[serde(default)]
+    close_from: Option<u32>,
     stages: Vec<Stage>,
 }
 
@@ -54,8 +60,8 @@ impl TryFrom<Unchecked> for Census {
     type Error = ExhaustionError;
 
     fn try_from(read: Unchecked) -> Result<Self, ExhaustionError> {
-        let Unchecked { version, runs, strength, order, stages } = read;
-        let census = Self { version, runs, strength, order, stages };
+        let Unchecked { version, runs, strength, order, close_from, stages } = read;
+        let census = Self { version, runs, strength, order, close_from, stages };
         census.check()?;
         Ok(census)
     }
@@ -68,6 +74,10 @@ impl TryFrom<Unchecked> for Census {
 pub struct Stage {
     /// How many there are.
     pub classes: u64,
+    /// How many of them were closed: shown by cliques to be completed by no columns, and so not
+    /// extended one column at a time.
+    #[serde(default, skip_serializing_if = "is_zero")]
+    pub closed: u64,
     /// The SHA-256 of the canonical representatives, ascending, each ended by a line feed.
     pub digest: String,
     /// The canonical representatives, ascending: columns with most levels first, separated by
@@ -75,10 +85,17 @@ pub struct Stage {
     pub representatives: Vec<String>,
 }
 
+// Serde hands over a reference.
+#[allow(clippy::trivially_copy_pass_by_ref)]
+fn is_zero(n: &u64) -> bool {
+    *n == 0
+}
+
 impl Stage {
     pub(super) fn new(representatives: Vec<String>) -> Self {
         Self {
             classes: representatives.len() as u64,
+            closed: 0,
             digest: digest(representatives.iter().map(String::as_str)),
             representatives,
         }
@@ -86,12 +103,14 @@ impl Stage {
 }
 
 /// What became of a stage.
-#[derive(Clone, Copy, Debug, PartialEq, Eq)]
+#[derive(Clone, Debug, PartialEq, Eq)]
 pub enum Progress {
     /// One more stage is done.
     Advanced,
     /// All columns are placed, or there is no array with the last one.
     Complete,
+    /// An array with all the columns, found while closing; nothing has changed.
+    Found(Array),
     /// The budget is used up, or somebody wants the end; nothing has changed.
     Stopped,
 }
@@ -119,7 +138,45 @@ impl Census {
         if !fits || columns > MAX_RUNS {
             return Err(ExhaustionError::TooLarge);
         }
-        Ok(Self { version: CENSUS_VERSION, runs, strength, order: order.to_vec(), stages: Vec::new() })
+        Ok(Self {
+            version: CENSUS_VERSION,
+            runs,
+            strength,
+            order: order.to_vec(),
+            close_from: None,
+            stages: Vec::new(),
+        })
+    }
+
+    /// The same, but from `columns` columns on an array of strength 2 without repeated runs is not
+    /// extended column by column when all columns that are missing have equal levels: it is asked
+    /// by cliques whether it can be completed, and closed when it cannot. The stages that follow
+    /// then hold only the extensions of what was left open: fit to decide existence, not to count.
+    #[must_use]
+    pub fn closing(self, columns: u32) -> Self {
+        Self { close_from: Some(columns), ..self }
+    }
+
+    /// Whether both are about one question, asked in the same way.
+    pub(super) fn asks_the_same_as(&self, other: &Self) -> bool {
+        let question = |c: &Self| (c.runs, c.strength, c.order.clone(), c.close_from);
+        question(self) == question(other)
+    }
+
+    /// How many columns are missing after stage `stage` (from 1) and of how many levels, when
+    /// arrays of that stage may be closed.
+    pub(super) fn closable(&self, stage: usize) -> Option<(usize, u16)> {
+        let missing = self.order.get(stage..)?;
+        let &levels = missing.first()?;
+        let alike = missing.iter().all(|&s| s == levels);
+        let from = self.close_from? as usize;
+        (self.strength == 2 && alike && missing.len() > 1 && stage >= from).then_some((missing.len(), levels))
+    }
+
+    /// Whether stage `stage` (from 1) has more closed classes than it can have.
+    pub(super) fn is_overdrawn(&self, stage: usize) -> bool {
+        let Stage { classes, closed, .. } = self.stages[stage - 1];
+        closed > classes || (closed > 0 && self.closable(stage).is_none())
     }
 
     /// The stages that are done.
@@ -150,6 +207,9 @@ impl Census {
         let stages = self.stages.len();
         if stages > self.order.len() || (1..stages).any(|i| self.stages[i - 1].classes == 0) {
             return state("its stages do not fit its columns".into());
+        }
+        if let Some(wrong) = (1..=stages).find(|&i| self.is_overdrawn(i)) {
+            return state(format!("stage {wrong} has a number of closed classes that it cannot have"));
         }
         let Some(last) = self.stages.last() else { return Ok(()) };
         last.check(stages, self, &mut Effort::unlimited())
@@ -201,20 +261,63 @@ impl Census {
                 forms.insert(first.form);
             }
         } else {
-            let sketches = self.sketches();
-            let purse = Purse::new(effort);
-            for portion in sketches.chunks(PORTION) {
-                let found: Option<Vec<BTreeSet<Vec<u8>>>> = portion
-                    .par_iter()
-                    .map(|sketch| purse.pay(|spend| extensions(sketch, self.strength, next, spend)))
-                    .collect();
-                let Some(found) = found else { return Progress::Stopped };
-                forms.extend(found.into_iter().flatten());
+            match self.extend(next, effort) {
+                Some(Extended { found: Some(array), .. }) => return Progress::Found(array),
+                Some(extended) => {
+                    forms = extended.forms;
+                    if let Some(last) = self.stages.last_mut() {
+                        last.closed = extended.closed;
+                    }
+                }
+                None => return Progress::Stopped,
             }
         }
         self.stages.push(Stage::new(forms.iter().map(|form| to_text(form, runs)).collect()));
         Progress::Advanced
     }
+
+    /// The extensions of the last stage by a column of `next` levels; `None` when stopped.
+    fn extend(&self, next: u16, effort: &mut Effort<'_>) -> Option<Extended> {
+        let closable = self.closable(self.stages.len());
+        let purse = Purse::new(effort);
+        let mut all = Extended::default();
+        for portion in self.sketches().chunks(PORTION) {
+            let work = |sketch: &Sketch| {
+                purse.pay(|spend| match closable.filter(|_| sketch.weights.iter().all(|&w| w == 1)) {
+                    Some((missing, levels)) => match completion(sketch, levels, missing, spend) {
+                        Completion::To(whole) => {
+                            Some(Extended { found: Some(whole.array()), ..Extended::default() })
+                        }
+                        Completion::Never => Some(Extended { closed: 1, ..Extended::default() }),
+                        Completion::Stopped => None,
+                    },
+                    None => {
+                        let forms = extensions(sketch, self.strength, next, spend)?;
+                        Some(Extended { forms, ..Extended::default() })
+                    }
+                })
+            };
+            // The whole portion is searched, so that the steps made do not depend on the threads.
+            let done: Vec<Extended> = portion.par_iter().map(work).collect::<Option<_>>()?;
+            for one in done {
+                all.forms.extend(one.forms);
+                all.closed += one.closed;
+                all.found = all.found.or(one.found);
+            }
+            if all.found.is_some() {
+                break;
+            }
+        }
+        Some(all)
+    }
+}
+
+/// What became of arrays that were to be extended.
+#[derive(Default)]
+struct Extended {
+    forms: BTreeSet<Vec<u8>>,
+    closed: u64,
+    found: Option<Array>,
 }
 
 /// The canonical forms of all extensions by one column.

@@ -26,6 +26,9 @@ pub enum Decision {
 ///
 /// # Parameters
 /// * `mix`, `runs`, `strength`: of the array, in the limits of [`Census::new`];
+/// * `close_from`: `None` to add all columns one by one; else from how many columns on arrays are
+///   closed by cliques, see [`Census::closing`] (strength 2 only; 4 or 5 is a good start when many
+///   columns have equal levels, and the claim is the same);
 /// * `from`: the state of an earlier call for the same question, or `None`;
 /// * `effort`: as [`Census::advance`].
 ///
@@ -46,11 +49,11 @@ pub enum Decision {
 /// use trysquare::floor::{Effort, exhaustion::{Decision, decide}};
 /// use trysquare::verify::{Demand, Verdict, certify};
 /// let mut effort = Effort::unlimited();
-/// let none = decide(&"3^1 2^5".parse()?, 12, 2, None, &mut effort)?;
+/// let none = decide(&"3^1 2^5".parse()?, 12, 2, None, None, &mut effort)?;
 /// let Decision::None(record) = none else { panic!("no 12 runs hold 3^1 2^5") };
 /// record.check_light()?;
 /// record.replay(&mut effort)?;
-/// let some = decide(&"2^4 3^1".parse()?, 12, 2, None, &mut effort)?;
+/// let some = decide(&"2^4 3^1".parse()?, 12, 2, None, None, &mut effort)?;
 /// let Decision::Exists(array) = some else { panic!("12 runs hold 2^4 3^1") };
 /// assert_eq!(array.levels(), [2, 2, 2, 2, 3]);
 /// assert_eq!(certify(&array, &Demand::strength(2))?.verdict, Verdict::Orthogonal);
@@ -60,24 +63,28 @@ pub fn decide(
     mix: &Mix,
     runs: u32,
     strength: u32,
+    close_from: Option<u32>,
     from: Option<Census>,
     effort: &mut Effort<'_>,
 ) -> Result<Decision, ExhaustionError> {
     let mut order = mix.levels().to_vec();
     order.sort_unstable_by_key(|&s| std::cmp::Reverse(s));
-    let fresh = Census::new(&order, runs, strength)?;
+    let mut fresh = Census::new(&order, runs, strength)?;
+    fresh.close_from = close_from;
     let mut census = match from {
         None => fresh,
         Some(state) => {
-            if (&state.order, state.runs, state.strength) != (&order, runs, strength) {
+            if !fresh.asks_the_same_as(&state) {
                 return Err(ExhaustionError::State("it is about another question".into()));
             }
             state
         }
     };
     while !census.is_complete() && census.stages.len() + 1 < order.len() {
-        if census.advance(effort) == Progress::Stopped {
-            return Ok(Decision::NotDecided(census));
+        match census.advance(effort) {
+            Progress::Stopped => return Ok(Decision::NotDecided(census)),
+            Progress::Found(array) => return Ok(Decision::Exists(in_order(&array, mix))),
+            Progress::Advanced | Progress::Complete => {}
         }
     }
     if !census.is_complete() {

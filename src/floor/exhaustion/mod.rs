@@ -19,6 +19,7 @@
 mod canonical;
 mod census;
 mod columns;
+mod completion;
 mod decide;
 pub mod latin;
 mod meter;

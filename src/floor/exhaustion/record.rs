@@ -53,6 +53,9 @@ pub struct ByColumns {
     pub strength: u32,
     /// The levels of the columns, descending: the order in which they were added.
     pub order: Vec<u16>,
+    /// From how many columns on arrays were closed by cliques, see [`Census::closing`].
+    #[serde(default, skip_serializing_if = "Option::is_none")]
+    pub close_from: Option<u32>,
     /// The classes of every prefix; the last one has none.
     pub stages: Vec<Stage>,
     /// The SHA-256 of all the above.
@@ -86,6 +89,9 @@ pub enum RecordError {
     /// A stage has classes where it should not, or has none where it should.
     #[error("stage {0} has a number of classes that it cannot have")]
     Classes(usize),
+    /// A stage has more closed classes than classes, or cannot have any.
+    #[error("stage {0} has a number of closed classes that it cannot have")]
+    Closed(usize),
     /// The representatives of a stage are not as many as the classes, or not of its digest.
     #[error("the representatives of stage {0} do not match its number of classes and its digest")]
     Representatives(usize),
@@ -191,16 +197,18 @@ impl ByColumns {
         {
             stages.iter_mut().for_each(|stage| stage.representatives.clear());
         }
-        let Census { runs, strength, ref order, .. } = *census;
+        let Census { runs, strength, close_from, ref order, .. } = *census;
         let (version, digest) = (RECORD_VERSION, String::new());
-        let mut record = Self { version, runs, strength, order: order.clone(), stages, digest };
+        let mut record = Self { version, runs, strength, order: order.clone(), close_from, stages, digest };
         record.digest = record.own_digest();
         record
     }
 
     pub(super) fn own_digest(&self) -> String {
-        let head = format!("{} {} {} {:?}", self.version, self.runs, self.strength, self.order);
-        let stages: Vec<String> = self.stages.iter().map(|s| format!("{} {}", s.classes, s.digest)).collect();
+        let close_from = self.close_from.map_or(String::new(), |columns| format!(" {columns}"));
+        let head = format!("{} {} {} {:?}{close_from}", self.version, self.runs, self.strength, self.order);
+        let stages: Vec<String> =
+            self.stages.iter().map(|s| format!("{} {} {}", s.classes, s.closed, s.digest)).collect();
         digest([head.as_str()].into_iter().chain(stages.iter().map(String::as_str)))
     }
 
@@ -208,7 +216,9 @@ impl ByColumns {
         if self.version != RECORD_VERSION {
             return Err(RecordError::Version(self.version));
         }
-        let census = Census::new(&self.order, self.runs, self.strength)?;
+        let mut census = Census::new(&self.order, self.runs, self.strength)?;
+        census.close_from = self.close_from;
+        census.stages.clone_from(&self.stages);
         if !self.order.is_sorted_by(|a, b| a >= b) {
             return Err(RecordError::Order);
         }
@@ -218,6 +228,9 @@ impl ByColumns {
         }
         if let Some(wrong) = (1..=stages).find(|&i| (self.stages[i - 1].classes == 0) != (i == stages)) {
             return Err(RecordError::Classes(wrong));
+        }
+        if let Some(wrong) = (1..=stages).find(|&i| census.is_overdrawn(i)) {
+            return Err(RecordError::Closed(wrong));
         }
         if self.digest != self.own_digest() {
             return Err(RecordError::Digest);
@@ -234,13 +247,13 @@ impl ByColumns {
 
     fn replay(&self, effort: &mut Effort<'_>) -> Result<(), RecordError> {
         let mix = Mix::new(self.order.clone()).map_err(|_| ExhaustionError::TooLarge)?;
-        let stages = match decide(&mix, self.runs, self.strength, None, effort)? {
+        let stages = match decide(&mix, self.runs, self.strength, self.close_from, None, effort)? {
             Decision::None(Record::Columns(again)) => again.stages,
             Decision::NotDecided(_) => return Err(RecordError::Unfinished),
             _ => return Err(RecordError::Differs { stage: Some(self.stages.len()) }),
         };
         let alike = |i: usize| match (stages.get(i), self.stages.get(i)) {
-            (Some(a), Some(b)) => (a.classes, &a.digest) == (b.classes, &b.digest),
+            (Some(a), Some(b)) => (a.classes, a.closed, &a.digest) == (b.classes, b.closed, &b.digest),
             (a, b) => a.is_none() && b.is_none(),
         };
         match (0..stages.len().max(self.stages.len())).find(|&i| !alike(i)) {

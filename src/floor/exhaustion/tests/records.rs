@@ -6,7 +6,7 @@ use super::super::{ByColumns, Decision, ExhaustionError, Record, RecordError, de
 use crate::floor::Effort;
 
 fn columns() -> ByColumns {
-    match decide(&"3^1 2^5".parse().unwrap(), 12, 2, None, &mut Effort::unlimited()) {
+    match decide(&"3^1 2^5".parse().unwrap(), 12, 2, None, None, &mut Effort::unlimited()) {
         Ok(Decision::None(Record::Columns(by))) => by,
         other => panic!("{other:?}"),
     }
@@ -41,6 +41,7 @@ fn every_rule_of_the_light_check_rejects() {
     assert_eq!(after(|by| by.stages[2].classes = 0), RecordError::Classes(3));
     assert_eq!(after(|by| by.stages[5].classes = 1), RecordError::Classes(6));
     assert_eq!(after(|by| drop(by.stages.pop())), RecordError::Classes(5));
+    assert_eq!(after(|by| by.stages[3].closed = 1), RecordError::Closed(4));
     assert_eq!(after(|by| by.stages[3].classes = 4), RecordError::Representatives(4));
     assert_eq!(after(|by| by.stages[3].digest = "0".repeat(64)), RecordError::Representatives(4));
     assert_eq!(after(|by| by.stages[5].digest = "0".repeat(64)), RecordError::Representatives(6));
@@ -80,6 +81,37 @@ fn representatives_may_be_left_out_but_numbers_must_be_true() {
     let differs = RecordError::Differs { stage: Some(4) };
     assert_eq!(record.replay(&mut Effort::unlimited()), Err(differs));
     assert_eq!(record.replay(&mut Effort::new(100, &|| false)), Err(RecordError::Unfinished));
+}
+
+#[test]
+fn closed_classes_are_checked_too() {
+    let closing = |close_from| match decide(
+        &"5^1 2^9".parse().unwrap(),
+        20,
+        2,
+        close_from,
+        None,
+        &mut Effort::unlimited(),
+    ) {
+        Ok(Decision::None(Record::Columns(by))) => by,
+        other => panic!("{other:?}"),
+    };
+    let good = closing(Some(4));
+    let closed: Vec<u64> = good.stages.iter().map(|stage| stage.closed).collect();
+    assert!(closed[..3] == [0, 0, 0] && closed[3] > 0 && good.stages.len() < closing(None).stages.len());
+    Record::Columns(good.clone()).replay(&mut Effort::unlimited()).unwrap();
+    let after = |change: &dyn Fn(&mut ByColumns)| {
+        let mut by = good.clone();
+        change(&mut by);
+        by.digest = by.own_digest();
+        Record::Columns(by).replay(&mut Effort::unlimited()).unwrap_err()
+    };
+    assert_eq!(after(&|by| by.stages[2].closed = 1), RecordError::Closed(3));
+    assert_eq!(after(&|by| by.stages[3].closed = by.stages[3].classes + 1), RecordError::Closed(4));
+    assert_eq!(after(&|by| by.close_from = None), RecordError::Closed(4));
+    assert_eq!(after(&|by| by.close_from = Some(5)), RecordError::Closed(4));
+    assert_eq!(after(&|by| by.stages[3].closed -= 1), RecordError::Differs { stage: Some(4) });
+    assert_eq!(after(&|by| by.close_from = Some(3)), RecordError::Differs { stage: Some(3) });
 }
 
 /// A record that passes the light check and claims what is false is found out by the replay.
