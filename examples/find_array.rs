@@ -2,7 +2,7 @@
 //! group written as cyclic orders (`3`, `3x3`) or `1`; prints the seed.
 
 use trysquare::hunt::orbits_seed;
-use trysquare::hunt::symmetric::{Motion, SymmetricHunt, hunt};
+use trysquare::hunt::symmetric::{Motion, STEPS, SymmetricHunt, hunt};
 use trysquare::mix::Mix;
 
 fn main() -> Result<(), Box<dyn std::error::Error>> {
@@ -25,6 +25,7 @@ fn main() -> Result<(), Box<dyn std::error::Error>> {
         seed: seed.parse()?,
         attempts: attempts.parse()?,
         pool: pool.parse()?,
+        steps: STEPS,
         exchanges: 0,
     };
     let start = std::time::Instant::now();

@@ -11,10 +11,12 @@
 //! | `fit` | the exact packing of a mix into a parent |
 //! | `candidates` | the maximal ones among the mixes offered |
 //! | `arrange` | from a packing to a recipe |
+//! | `beyond` | the page of mixes beyond the published ones known here |
 //! | `shelf` | all of it together, worked out on demand |
 
 mod arrange;
 mod bag;
+mod beyond;
 mod books;
 mod candidates;
 mod compositions;
@@ -30,6 +32,7 @@ mod strength_two;
 
 pub use arrange::arrange;
 pub use bag::Bag;
+pub use beyond::beyond_page;
 pub use books::{Best, HadamardBook, SchemeBook, standard_group};
 pub use fit::{Host, Packer, Placement};
 pub use latin_book::LatinBook;

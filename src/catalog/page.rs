@@ -8,13 +8,13 @@ use super::shelf::{Parent, Shelf};
 use crate::mix::Mix;
 
 /// One line of `catalog/published.txt`: a mix that the literature holds.
-struct Published {
-    strength: u32,
-    runs: u64,
-    bag: Bag,
+pub(super) struct Published {
+    pub(super) strength: u32,
+    pub(super) runs: u64,
+    pub(super) bag: Bag,
 }
 
-fn published() -> Vec<Published> {
+pub(super) fn published() -> Vec<Published> {
     include_str!("../../catalog/published.txt")
         .lines()
         .filter(|line| !line.starts_with('#'))

@@ -7,6 +7,7 @@ use super::candidates::Candidates;
 use super::compositions::{juxtapositions, level_products};
 use super::shelf::{CLOSED, Shelf, Variant};
 use crate::algebra::{divisors, prime_power};
+use crate::construct::has_conference_blocks;
 use crate::recipe::{HadamardRecipe, Recipe, SchemeRecipe};
 
 /// Offers everything known at `runs` runs: families first, then compositions.
@@ -44,6 +45,12 @@ fn families<'a>(shelf: &'a Shelf, n: u32, candidates: &mut Candidates<'a>) {
                 Arc::new(Recipe::AddelmanKempthorne { q: u32::from(q), n: e })
             });
         }
+    }
+    if let (true, Ok(q)) = (n.is_multiple_of(4) && has_conference_blocks(n / 4), u16::try_from(n / 4)) {
+        let source = "blocks from conference matrices (found for this project)";
+        candidates.offer(Bag::from_pairs([(2, 2 * (n / 4 - 1)), (q, 1)]), source, move || {
+            Arc::new(Recipe::ConferenceBlocks { q: u32::from(q) })
+        });
     }
     if let Some((p, m)) = prime_power(n) {
         for d in 1..=m / 2 {

@@ -15,6 +15,7 @@ pub mod strength3;
 mod testing;
 
 mod blocks;
+mod conference_blocks;
 mod orbits;
 
 use thiserror::Error;
@@ -23,6 +24,7 @@ use crate::algebra::AlgebraError;
 use crate::array::ArrayError;
 
 pub use blocks::{block_product, block_types};
+pub use conference_blocks::{conference_blocks, has_conference_blocks};
 pub use orbits::{OrbitColumn, orbit_array};
 
 /// Why a construction cannot be carried out.

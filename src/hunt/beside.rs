@@ -15,7 +15,7 @@ use super::frame;
 use super::halves::Halves;
 use super::random::Random;
 use super::splits::{Move, Orbit, Split, orbit};
-use super::symmetric::{Motion, SymmetricHunt, attempts};
+use super::symmetric::{Motion, STEPS, SymmetricHunt, attempts};
 use crate::construct::{OrbitColumn, orbit_array};
 use crate::floor::Effort;
 
@@ -25,6 +25,8 @@ pub enum Base {
     /// Levels and coefficients: the level in a run is the sum of coefficient · coordinate, modulo
     /// the levels; coefficient · radix is a multiple of the levels.
     Forms(Vec<(u16, Vec<u16>)>),
+    /// Levels and the level in each run, as they are.
+    Given(Vec<(u16, Vec<u8>)>),
     /// Columns of these levels, for each attempt anew, symmetric under the cyclic groups of the
     /// first `coordinates` coordinates.
     Random {
@@ -172,6 +174,10 @@ impl<'a> Setting<'a> {
                 let mut random = Random::new(self.request.seed);
                 Some(Some(self.start(self.forms(forms)?, &mut random, effort)?))
             }
+            Base::Given(columns) => {
+                let mut random = Random::new(self.request.seed);
+                Some(Some(self.start(self.fitting(columns.clone())?, &mut random, effort)?))
+            }
             Base::Random { .. } => Some(None),
         }
     }
@@ -190,12 +196,18 @@ impl<'a> Setting<'a> {
         let array = orbit_array(group, columns).ok()?;
         let symbols =
             |j: usize| -> Option<Vec<u8>> { array.column(j).iter().map(|&x| u8::try_from(x).ok()).collect() };
-        let mut base: Vec<(u16, Vec<u8>)> =
+        let base =
             (0..columns.len()).map(|j| Some((columns[j].levels, symbols(j)?))).collect::<Option<_>>()?;
-        // Small blocks first.
+        self.fitting(base)
+    }
+
+    /// Columns of all runs whose levels the group permutes, those with small blocks first.
+    fn fitting(&self, mut base: Vec<(u16, Vec<u8>)>) -> Option<Vec<(u16, Vec<u8>)>> {
         base.sort_by_key(|(levels, _)| std::cmp::Reverse(*levels));
-        let fits = |(_, symbols): &(u16, Vec<u8>)| {
-            symbols.len() == self.runs && frame::keeps(&self.elements, symbols)
+        let fits = |(levels, symbols): &(u16, Vec<u8>)| {
+            symbols.len() == self.runs
+                && symbols.iter().all(|&x| u16::from(x) < *levels)
+                && frame::keeps(&self.elements, symbols)
         };
         base.iter().all(fits).then_some(base)
     }
@@ -221,6 +233,7 @@ impl<'a> Setting<'a> {
             seed: self.request.seed ^ attempt.wrapping_mul(0x9FB2_1C65_1E98_DF25),
             attempts: 8,
             pool: 60,
+            steps: STEPS,
             exchanges: 0,
         };
         let found = attempts(&base, effort).filter(|f| f.complete)?;
@@ -364,6 +377,20 @@ mod tests {
         };
         let found = hunt_beside(&request).unwrap();
         assert!(found.complete && judged(&found));
+    }
+
+    /// Columns that are given as such do what the same columns do as forms.
+    #[test]
+    fn a_given_base() {
+        let forms = two_of_six(6);
+        let column = |f: fn(u8) -> u8| (0..36).map(f).collect::<Vec<u8>>();
+        let given =
+            |rows| BesideHunt { base: Base::Given(vec![(6, rows), (6, column(|r| r / 6))]), ..forms.clone() };
+        let found = hunt_beside(&given(column(|r| r % 6))).unwrap();
+        assert!(judged(&found));
+        assert_eq!(Some(found), hunt_beside(&forms));
+        assert!(hunt_beside(&given(column(|r| r % 7))).is_none(), "a seventh level");
+        assert!(hunt_beside(&given(column(|r| r % 6)[1..].to_vec())).is_none(), "35 runs");
     }
 
     #[test]

@@ -17,6 +17,7 @@
 //! | `subspaces` | subspaces of which any t are independent |
 //! | `symmetric` | arrays of strength 2 with a prescribed group |
 //! | `t_matrices` | T-matrices, to be multiplied with Williamson's |
+//! | `types` | two-level columns beside one p-level column in 4p runs, under a group that turns the types |
 //! | `write` | what was found as the text of a seed |
 //!
 //! `frame` (runs as points of a box), `splits`, `halves` and `clique` serve `beside`.
@@ -44,6 +45,7 @@ mod splits;
 pub mod subspaces;
 pub mod symmetric;
 mod t_matrices;
+pub mod types;
 mod write;
 
 pub use crate::floor::Effort;

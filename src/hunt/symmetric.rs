@@ -23,6 +23,9 @@ use crate::floor::Effort;
 /// The largest number of runs that is searched.
 pub const MAX_RUNS: u32 = 128;
 
+/// The usual number of steps for a solution.
+pub const STEPS: u64 = 4000;
+
 /// What is looked for.
 #[derive(Clone, Debug)]
 pub struct SymmetricHunt {
@@ -48,6 +51,8 @@ pub struct SymmetricHunt {
     pub attempts: u64,
     /// How many solutions are drawn for a kind of column before a clique is grown.
     pub pool: usize,
+    /// How many steps a solution may take before it is given up.
+    pub steps: u64,
     /// How many exchanges improve a clique of two- or three-level columns at strength 2; 0 for
     /// greedy cliques.
     pub exchanges: u64,
@@ -264,7 +269,7 @@ impl Setting {
         let characters = self.characters(hunt, s, random);
         while missing > 0 {
             if pool.len() < missing {
-                self.draw(hunt.pool, &partial.tests, s, &characters, &mut pool, random, effort);
+                self.draw((hunt.pool, hunt.steps), &partial.tests, s, &characters, &mut pool, random, effort);
                 if pool.is_empty() || !effort.goes_on() {
                     return false;
                 }
@@ -323,7 +328,7 @@ impl Setting {
     #[allow(clippy::too_many_arguments)]
     fn draw(
         &self,
-        size: usize,
+        (size, steps): (usize, u64),
         tests: &[Test],
         s: u16,
         characters: &[Vec<u16>],
@@ -338,7 +343,7 @@ impl Setting {
         while pool.len() < size && dry < 40 + size / 4 && effort.goes_on() {
             let shifts = &characters[random.below(characters.len())];
             dry += 1;
-            let Some(base) = solver.solve(shifts, random, effort) else { continue };
+            let Some(base) = solver.solve(shifts, steps, random, effort) else { continue };
             let Some(column) = self.column(OrbitColumn { levels: s, shifts: shifts.clone(), base }) else {
                 continue;
             };
@@ -467,6 +472,7 @@ mod tests {
             seed: 1,
             attempts: 400,
             pool: 200,
+            steps: STEPS,
             exchanges: 0,
         };
         let found = hunt(&request, None).unwrap();
@@ -497,6 +503,7 @@ mod tests {
             seed: 1,
             attempts: 4,
             pool: 10,
+            steps: STEPS,
             exchanges: 0,
         };
         assert!(hunt(&request(12, &[5], &[]), None).is_none());

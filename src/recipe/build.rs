@@ -45,6 +45,7 @@ impl Recipe {
             Self::TwoSubspaces { m, d } => field::two_subspaces(*m, *d)?,
             Self::CodeCosets { q, n, k } => field::code_cosets(*q, *n, *k)?,
             Self::BlockTypes { vectors } => crate::construct::block_types(vectors)?,
+            Self::ConferenceBlocks { q } => crate::construct::conference_blocks(*q)?,
             Self::Orbits { group, columns, .. } => orbit_array(group, columns)?,
             Self::Hadamard { matrix } => matrix.build()?.to_array()?,
             Self::Developed { scheme } => scheme::developed_with_rows(&scheme.build()?)?,

@@ -152,6 +152,13 @@ pub enum Recipe {
         /// The vectors, each of length p, over ±1, ±2, ±3.
         vectors: Vec<Vec<i8>>,
     },
+    /// 2(q − 1) two-level factors and, last, one q-level factor in 4q runs, strength 2: block types
+    /// from conference matrices of the orders q − 1 and q + 1, see
+    /// [`conference_blocks`](crate::construct::conference_blocks).
+    ConferenceBlocks {
+        /// The number of levels, odd.
+        q: u32,
+    },
     /// One symbol per orbit of an abelian group that acts freely on the runs and by translation on
     /// the levels, see [`orbit_array`](crate::construct::orbit_array).
     Orbits {

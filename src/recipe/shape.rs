@@ -78,6 +78,12 @@ impl Recipe {
                 levels.push(u16::try_from(blocks).map_err(|_| wrong("more than 65535 blocks"))?);
                 levels
             }
+            Self::ConferenceBlocks { q } => {
+                let blocks = level(*q)?;
+                let mut levels = vec![2; usize::from(blocks).saturating_sub(1) * 2];
+                levels.push(blocks);
+                levels
+            }
             Self::Orbits { columns, .. } => columns.iter().map(|c| c.levels).collect(),
             Self::Hadamard { matrix } => vec![2; order(matrix.order())? - 1],
             Self::Developed { scheme } => {
@@ -194,6 +200,7 @@ impl Recipe {
                 raise(2, m.checked_mul(2).and_then(|m| m.checked_add(*d)).ok_or_else(too_many)?)
             }
             Self::BlockTypes { vectors } => times(4, vectors.first().map_or(0, Vec::len)),
+            Self::ConferenceBlocks { q } => times(4, *q as usize),
             Self::Orbits { group, columns, .. } => group
                 .iter()
                 .try_fold(columns.first().map_or(0, |c| c.base.len()), |n, &g| times(n, usize::from(g))),
@@ -240,6 +247,7 @@ impl Recipe {
             | Self::LargeAndSmall { .. }
             | Self::AddelmanKempthorne { .. }
             | Self::BlockTypes { .. }
+            | Self::ConferenceBlocks { .. }
             | Self::Hadamard { .. }
             | Self::Developed { .. }
             | Self::QuasiDifference { .. }

@@ -43,6 +43,14 @@ impl fmt::Display for Recipe {
             Self::BlockTypes { vectors } => {
                 write!(f, "block types, {} blocks of 4 runs", vectors.first().map_or(0, Vec::len))
             }
+            Self::ConferenceBlocks { q } => {
+                write!(
+                    f,
+                    "{q} blocks of 4 runs from conference matrices C({}) and C({})",
+                    q.saturating_sub(1),
+                    q.saturating_add(1)
+                )
+            }
             Self::Orbits { group, columns, .. } => {
                 let orbits = columns.first().map_or(0, |c| c.base.len());
                 write!(f, "stored array, {orbits} orbits")?;

@@ -1,14 +1,18 @@
 //! `hunt --from`: which more columns fit beside given ones.
 
+use std::io::{self, Write};
 use std::time::{Duration, Instant};
 
+use ::csv as csv_lines;
+
 use super::{Flags, Format};
+use crate::array::Array;
 use crate::cli::certify::read_as;
 use crate::cli::output::{self, Output};
 use crate::cli::progress::Progress;
 use crate::cli::{ExitCode, Failure, flags, words};
 use crate::exchange::document::{ExtendDocument, KindPart};
-use crate::exchange::{Header, Received, csv, default_name, text};
+use crate::exchange::{Header, Received, Symbols, default_name, text};
 use crate::hunt::Effort;
 use crate::hunt::extend::{ExtendError, Extended, Extension, Standing, Wanted, extend};
 use crate::mix::counts_of;
@@ -72,7 +76,7 @@ pub(super) fn run(from: &str, flags: &Flags, format: Format) -> Result<ExitCode,
     if let Some((array, proof)) = &judged {
         let header = Header::Names(&names);
         match format {
-            Format::Csv => out.write(|out| csv::write(array, flags.symbols, header, out))?,
+            Format::Csv => out.write(|out| in_words(&received, array, &names, flags.symbols, out))?,
             Format::Text => out.write(|out| text::write(array, flags.symbols, header, out))?,
             Format::Json => true,
         };
@@ -86,6 +90,26 @@ pub(super) fn run(from: &str, flags: &Flags, format: Format) -> Result<ExitCode,
     }
     flags.say(&account(&received, strength, &kinds, judged.as_ref().map(|(_, c)| c)));
     Ok(code(asked.is_some(), &best))
+}
+
+/// CSV in which the given columns keep the words of their file.
+fn in_words(
+    received: &Received,
+    array: &Array,
+    names: &[String],
+    symbols: Symbols,
+    out: &mut dyn Write,
+) -> io::Result<()> {
+    let mut writer = csv_lines::Writer::from_writer(out);
+    writer.write_record(names)?;
+    for row in array.rows() {
+        let cell = |(j, &symbol): (usize, &u16)| match received.level_name(j, symbol) {
+            Some(word) => word.to_owned(),
+            None => symbols.value(symbol, array.levels()[j]).to_string(),
+        };
+        writer.write_record(row.iter().enumerate().map(cell))?;
+    }
+    writer.flush()
 }
 
 /// All columns asked for, or at least one, is yes.

@@ -19,12 +19,16 @@
 //! less and has the larger group of symmetries. The data for the last three are arguments; those
 //! known to the project lie in the folder `catalog/`.
 //!
+//! [`conference`] builds their relatives with a zero diagonal, C·Cᵀ = (n − 1)I, for the
+//! [blocks](crate::construct::conference_blocks).
+//!
 //! **Orders not reached.** Up to 1000 there is a matrix of every order but 668, 716, 892, for which
 //! none is known in the literature, and 996. For 996 = 4·249 the rows constant on the orbits of the
 //! only useful group of units modulo 249 (order 41) were tried exhaustively, and there are none;
 //! T-matrices of order 83 = 3·28 − 1, from Turyn-type sequences with n = 28, times Williamson's of
 //! order 3 would do, but we have no such sequences.
 
+mod conference;
 mod cooper_wallis;
 mod four_circulants;
 mod kronecker;
@@ -35,6 +39,7 @@ mod paley_two;
 mod sylvester;
 mod turyn;
 
+pub use conference::{MAX_CONFERENCE_ORDER, conference, has_conference};
 pub use cooper_wallis::cooper_wallis;
 pub use four_circulants::goethals_seidel;
 pub use kronecker::kronecker;

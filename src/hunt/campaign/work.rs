@@ -13,7 +13,7 @@ use crate::hunt::blocks::{BlockSearch, blocks};
 use crate::hunt::exact::{self, ExactHunt, decide};
 use crate::hunt::random::Random;
 use crate::hunt::slices;
-use crate::hunt::symmetric::{Motion, SymmetricHunt, attempts};
+use crate::hunt::symmetric::{Motion, STEPS, SymmetricHunt, attempts};
 use crate::mix::{Mix, counts_of};
 
 /// Raised whenever a task with the same number does something else, so that no state of an older
@@ -87,6 +87,7 @@ impl Strategy {
                     seed,
                     attempts: u64::MAX,
                     pool: [40, 100, 200, 300, 500, 800, 1200, 1600][round.min(7) as usize],
+                    steps: (250 << round.min(5)).min(STEPS),
                     // Every second round the cliques are worked on.
                     exchanges: if round % 2 == 1 { 400 } else { 0 },
                 };

@@ -17,9 +17,6 @@ pub(super) struct Solver<'a> {
 }
 
 impl<'a> Solver<'a> {
-    /// A solution that needs more steps than this is given up.
-    const STEPS: usize = 4000;
-
     pub(super) fn new(setting: &'a Setting, chosen: &'a [Test], s: u16) -> Self {
         let runs = setting.runs;
         let (mut offsets, mut size) = (Vec::new(), 0);
@@ -44,6 +41,7 @@ impl<'a> Solver<'a> {
     pub(super) fn solve(
         &mut self,
         shifts: &[u16],
+        most: u64,
         random: &mut Random,
         effort: &mut Effort<'_>,
     ) -> Option<Vec<u16>> {
@@ -76,13 +74,19 @@ impl<'a> Solver<'a> {
                 }
                 Some(b) => {
                     steps += 1;
-                    if steps > Self::STEPS || !effort.spend(cost) {
+                    if steps > most || !effort.spend(cost) {
                         return None;
                     }
                     base[o] = b;
-                    self.count(o, &images[usize::from(b)], true);
-                    if !self.within(o, &images[usize::from(b)], &limits) {
-                        self.count(o, &images[usize::from(b)], false);
+                    let symbols = &images[usize::from(b)];
+                    // Where every counter is full there is no need to count; with a single run in
+                    // the orbit nothing else can go wrong.
+                    if !self.within(o, symbols, &limits, 1) {
+                        continue;
+                    }
+                    self.count(o, symbols, true);
+                    if symbols.len() > 1 && !self.within(o, symbols, &limits, 0) {
+                        self.count(o, symbols, false);
                         continue;
                     }
                     depth += 1;
@@ -111,15 +115,15 @@ impl<'a> Solver<'a> {
         }
     }
 
-    /// Whether the counters that orbit `o` touches are within their limits.
-    fn within(&self, o: usize, symbols: &[usize], limits: &[u16]) -> bool {
+    /// Whether the counters that orbit `o` touches are within their limits and leave `room`.
+    fn within(&self, o: usize, symbols: &[usize], limits: &[u16], room: u16) -> bool {
         let s = usize::from(self.s);
         symbols.iter().enumerate().all(|(g, &symbol)| {
             let run = o * self.setting.order + g;
             let alone = self.chosen.len();
-            self.counters[self.offsets[alone] + symbol] <= limits[alone]
+            self.counters[self.offsets[alone] + symbol] + room <= limits[alone]
                 && self.chosen.iter().zip(&self.offsets).zip(limits).all(|((c, &offset), &limit)| {
-                    self.counters[offset + usize::from(c.symbols[run]) * s + symbol] <= limit
+                    self.counters[offset + usize::from(c.symbols[run]) * s + symbol] + room <= limit
                 })
         })
     }
