@@ -12,6 +12,7 @@
 //! [`bounds`] and [`floor`](floor()) are the closed formulas and take no time; [`strengthen`] goes on from
 //! there where an answer stands above the floor.
 
+pub mod exhaustion;
 pub mod proof;
 
 mod divisibility;
