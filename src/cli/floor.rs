@@ -37,6 +37,10 @@ pub(super) struct Flags {
     /// Check the proof in this file (- for stdin), trusting nothing in it
     #[arg(long, value_name = "FILE", conflicts_with_all = ["mix", "strength", "proof", "json"])]
     check: Option<String>,
+    /// Make recorded searches again, however long it takes; a proof that rests on one is not
+    /// confirmed without
+    #[arg(long, requires = "check")]
+    deep: bool,
     /// Print one JSON object
     #[arg(long)]
     json: bool,
@@ -44,7 +48,7 @@ pub(super) struct Flags {
 
 pub(super) fn run(flags: &Flags) -> Result<ExitCode, Failure> {
     if let Some(file) = &flags.check {
-        return check(file);
+        return check(file, flags.deep);
     }
     let text = flags.mix.join(" ");
     if let Some(runs) = flags.runs {
@@ -188,7 +192,7 @@ fn table(bounds: &[(Proof, Duration)], best: &FloorDocument<'_>) -> String {
     )
 }
 
-fn check(file: &str) -> Result<ExitCode, Failure> {
+fn check(file: &str, deep: bool) -> Result<ExitCode, Failure> {
     let text = input::read_text(file)?;
     let proof: Proof = serde_json::from_str(&text)
         .map_err(|e| Failure::input(input::title(file), format!("not a proof: {e}")))?;
@@ -199,7 +203,15 @@ fn check(file: &str) -> Result<ExitCode, Failure> {
         words::count(proof.runs, "run"),
         proof.name()
     );
-    match proof.check() {
+    if !deep && proof.is_recorded() && proof.check_light().is_ok() {
+        output::data(&format!(
+            "not confirmed: the proof rests on the record of a search, which was not made again; add --deep\n\
+             it claims that {claim}\n"
+        ))?;
+        return Ok(ExitCode::Stopped);
+    }
+    let checked = if deep { proof.check_deep(&mut Effort::unlimited()) } else { proof.check() };
+    match checked {
         Ok(()) => {
             output::data(&format!("the proof holds: {claim}\n"))?;
             Ok(ExitCode::Yes)

@@ -2,6 +2,7 @@
 
 use super::linear_program::{distances, parity};
 use super::proof::{Bound, Exclusion, Reason, Step, Subject, block_limit, eight_runs_allow};
+use super::recorded::recorded;
 use super::{Effort, bose_bush, bush, confirmed, divisibility, rao};
 use crate::mix::Mix;
 
@@ -19,7 +20,8 @@ use crate::mix::Mix;
 #[must_use]
 pub fn exclude(mix: &Mix, strength: u32, runs: u64, effort: &mut Effort<'_>) -> Option<Exclusion> {
     let mut path = Path { steps: Vec::new(), at: Subject { runs, strength, mix: mix.clone() } };
-    let reason = path.search(effort)?;
+    // What needs no search to be checked is preferred.
+    let reason = path.search(&mut |path| path.argument(effort)).or_else(|| path.search(&mut Path::record))?;
     Some(Exclusion { runs, steps: path.steps, about: path.at, reason })
 }
 
@@ -38,23 +40,10 @@ impl Path {
         true
     }
 
-    /// A reason at the end of some path from here; on success `self` is that path.
-    fn search(&mut self, effort: &mut Effort<'_>) -> Option<Reason> {
-        if let Some(reason) = plain(&self.at) {
-            return Some(reason);
-        }
-        let finders: [fn(&Subject) -> Option<(Vec<Step>, Reason)>; 2] = [four_runs, eight_runs];
-        for find in finders {
-            if let Some((steps, reason)) = find(&self.at)
-                && self.follow(&steps, &reason)
-            {
-                return Some(reason);
-            }
-        }
-        if let Some(reason) = parity(&self.at, effort) {
-            return Some(reason);
-        }
-        if let Some(reason) = distances(&self.at, effort) {
+    /// A reason that `find` gives here or after taking derived arrays; on success `self` is the path
+    /// to it.
+    fn search(&mut self, find: &mut dyn FnMut(&mut Self) -> Option<Reason>) -> Option<Reason> {
+        if let Some(reason) = find(self) {
             return Some(reason);
         }
         if self.at.strength < 3 {
@@ -63,7 +52,7 @@ impl Path {
         for (levels, _) in self.at.counts() {
             let (depth, before) = (self.steps.len(), self.at.clone());
             if self.step(Step::Derive { levels })
-                && let Some(reason) = self.search(effort)
+                && let Some(reason) = self.search(find)
             {
                 return Some(reason);
             }
@@ -71,6 +60,27 @@ impl Path {
             self.at = before;
         }
         None
+    }
+
+    /// A reason that can be checked on the spot.
+    fn argument(&mut self, effort: &mut Effort<'_>) -> Option<Reason> {
+        if let Some(reason) = plain(&self.at) {
+            return Some(reason);
+        }
+        for find in [four_runs, eight_runs] {
+            if let Some((steps, reason)) = find(&self.at)
+                && self.follow(&steps, &reason)
+            {
+                return Some(reason);
+            }
+        }
+        parity(&self.at, effort).or_else(|| distances(&self.at, effort))
+    }
+
+    /// A stored record of a search.
+    fn record(&mut self) -> Option<Reason> {
+        let (steps, reason) = recorded(&self.at)?;
+        self.follow(&steps, &reason).then_some(reason)
     }
 
     /// Takes all the steps if the reason holds at their end.
