@@ -4,9 +4,9 @@ use std::sync::OnceLock;
 
 use serde_json::Value;
 
+use super::Effort;
 use super::exhaustion::{Claim, Record, stored};
 use super::proof::{Proof, ProofError, Reason, Step, Subject};
-use super::Effort;
 use crate::mix::Mix;
 
 impl Proof {

@@ -4,7 +4,7 @@ use super::linear_program::linear_program;
 use super::{Effort, FloorError, Proof, exclude};
 
 /// The effort that leaves [`strengthen`] well under a tenth of a second.
-pub const QUICK: u64 = 20_000_000;
+pub const QUICK: u64 = 1_500_000;
 
 /// No more than this many numbers of runs are looked at one by one.
 const MOST: usize = 64;

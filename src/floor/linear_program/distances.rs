@@ -22,6 +22,9 @@ const TOLERANCE: f64 = 1e-6;
 /// Cost: two small linear programs for every case looked at.
 #[must_use]
 pub fn distances(about: &Subject, effort: &mut Effort<'_>) -> Option<Reason> {
+    if !effort.goes_on() {
+        return None;
+    }
     let counts = about.counts();
     let space = Space::new(&counts).filter(|s| s.len() <= TUPLES)?;
     let few = |&j: &usize| space.size(j) <= u64::from(about.strength);

@@ -76,7 +76,7 @@ impl<'a> Question<'a> {
 #[must_use]
 pub fn linear_program(mix: &Mix, strength: u32, divisor: u64, effort: &mut Effort<'_>) -> Option<Bound> {
     let counts: Vec<(u16, u64)> = mix.counts().into_iter().map(|(s, k)| (s, k as u64)).collect();
-    let question = Question::new(&counts, strength, None)?;
+    let question = Question::new(&counts, strength, None).filter(|_| effort.goes_on())?;
     let weights = solve(&question, f64::INFINITY, effort)?;
     let value = question.value(&weights, question.constant(&weights));
     if !(1.0..1e15).contains(&value) {
@@ -98,7 +98,7 @@ pub fn linear_program(mix: &Mix, strength: u32, divisor: u64, effort: &mut Effor
 pub fn parity(about: &Subject, effort: &mut Effort<'_>) -> Option<Reason> {
     let counts = about.counts();
     let even: u64 = counts.iter().filter(|c| c.0 % 2 == 0).map(|c| c.1).sum();
-    if !parity_applies(about.runs, about.strength) || even <= u64::from(about.strength) {
+    if !effort.goes_on() || !parity_applies(about.runs, about.strength) || even <= u64::from(about.strength) {
         return None;
     }
     let question = Question::new(&counts, about.strength, Some(about.runs))?;
