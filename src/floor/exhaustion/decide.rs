@@ -27,7 +27,7 @@ pub enum Decision {
 /// # Parameters
 /// * `mix`, `runs`, `strength`: of the array, in the limits of [`Census::new`];
 /// * `close_from`: `None` to add all columns one by one; else from how many columns on arrays are
-///   closed by cliques, see [`Census::closing`] (strength 2 only; 4 or 5 is a good start when many
+///   closed by cliques, see [`Census::closing`] (4 or 5 is a good start when many
 ///   columns have equal levels, and the claim is the same);
 /// * `from`: the state of an earlier call for the same question, or `None`;
 /// * `effort`: as [`Census::advance`].

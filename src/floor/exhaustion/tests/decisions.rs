@@ -57,24 +57,36 @@ fn what_simple_bounds_exclude_is_excluded() {
 #[test]
 fn closing_changes_no_decision() {
     let mut seen = [0; 2];
-    for (runs, text) in [
-        (8, "2^7"),
-        (8, "4^1 2^4"),
-        (8, "4^1 2^5"),
-        (9, "3^4"),
-        (12, "2^11"),
-        (12, "3^1 2^4"),
-        (12, "3^1 2^5"),
-        (16, "4^2 2^9"),
-        (16, "4^1 2^12"),
-        (16, "4^5"),
-        (18, "3^7"),
-        (18, "3^8"),
-        (18, "6^1 3^6"),
-        (20, "5^1 2^8"),
-        (20, "5^1 2^9"),
+    for (runs, strength, text) in [
+        (8, 3, "2^4"),
+        (8, 3, "2^5"),
+        (16, 3, "2^8"),
+        (16, 3, "4^1 2^4"),
+        (24, 3, "2^12"),
+        (24, 3, "3^1 2^4"),
+        (24, 3, "3^1 2^5"),
+        (27, 3, "3^4"),
+        (27, 3, "3^5"),
+        (40, 3, "5^1 2^6"),
+        (40, 3, "5^1 2^7"),
+        (54, 3, "3^5"),
+        (8, 2, "2^7"),
+        (8, 2, "4^1 2^4"),
+        (8, 2, "4^1 2^5"),
+        (9, 2, "3^4"),
+        (12, 2, "2^11"),
+        (12, 2, "3^1 2^4"),
+        (12, 2, "3^1 2^5"),
+        (16, 2, "4^2 2^9"),
+        (16, 2, "4^1 2^12"),
+        (16, 2, "4^5"),
+        (18, 2, "3^7"),
+        (18, 2, "3^8"),
+        (18, 2, "6^1 3^6"),
+        (20, 2, "5^1 2^8"),
+        (20, 2, "5^1 2^9"),
     ] {
-        let ask = |close_from| decide(&mix(text), runs, 2, close_from, None, &mut Effort::unlimited());
+        let ask = |close_from| decide(&mix(text), runs, strength, close_from, None, &mut Effort::unlimited());
         let plain = ask(None).unwrap();
         for from in 1..5 {
             match (&plain, ask(Some(from)).unwrap()) {
@@ -82,7 +94,7 @@ fn closing_changes_no_decision() {
                 (Decision::Exists(_), Decision::Exists(array)) => {
                     seen[1] += 1;
                     assert_eq!(array.levels(), mix(text).levels());
-                    let judged = certify(&array, &Demand::strength(2)).unwrap();
+                    let judged = certify(&array, &Demand::strength(strength as usize)).unwrap();
                     assert_eq!(judged.verdict, Verdict::Orthogonal, "{runs} {text}");
                 }
                 (one, other) => panic!("{runs} {text} {from}: {one:?} {other:?}"),
