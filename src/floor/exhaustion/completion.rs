@@ -47,7 +47,8 @@ pub(super) fn completion(
         return Completion::Never;
     }
     let Some(meeting) = Meeting::new(sketch, strength, s) else { return Completion::Never };
-    if all.iter().any(|split| meeting.allows(split, split)) {
+    let candidates: Vec<Candidate<'_>> = all.iter().map(|split| meeting.candidate(split)).collect();
+    if candidates.iter().any(|one| meeting.allows(one, one)) {
         // One vertex would stand for several columns.
         return Completion::Open;
     }
@@ -56,7 +57,7 @@ pub(super) fn completion(
         if !spend(i as u64) {
             return Completion::Stopped;
         }
-        for j in (0..i).filter(|&j| meeting.allows(&all[i], &all[j])) {
+        for j in (0..i).filter(|&j| meeting.allows(&candidates[i], &candidates[j])) {
             next[i][j / 64] |= 1 << (j % 64);
             next[j][i / 64] |= 1 << (i % 64);
         }
@@ -79,13 +80,28 @@ pub(super) fn completion(
     }
 }
 
+/// A new column, and for every level the set of the runs that occur once and have it.
+struct Candidate<'a> {
+    split: &'a [u8],
+    masks: Vec<u128>,
+}
+
 /// How two new columns of s levels must meet: in every cell of t − 2 old columns each pair of
 /// levels has its share of the runs.
 struct Meeting<'a> {
     weights: &'a [u16],
     s: usize,
-    /// The distinct runs of every cell, and the share.
-    cells: Vec<(Vec<usize>, u32)>,
+    cells: Vec<Cell>,
+}
+
+#[derive(Default)]
+struct Cell {
+    /// The runs that occur once.
+    single: u128,
+    /// The others.
+    repeated: Vec<usize>,
+    /// How many runs of the cell each pair of levels has.
+    share: u32,
 }
 
 impl<'a> Meeting<'a> {
@@ -93,34 +109,48 @@ impl<'a> Meeting<'a> {
     fn new(sketch: &'a Sketch, strength: u32, s: usize) -> Option<Self> {
         let mut cells = Vec::new();
         for set in subsets(sketch.levels.len(), strength as usize - 2) {
-            let mut by_levels: BTreeMap<Vec<u8>, Vec<usize>> = BTreeMap::new();
+            let mut by_levels: BTreeMap<Vec<u8>, (Cell, usize)> = BTreeMap::new();
             for (r, row) in sketch.rows.iter().enumerate() {
-                by_levels.entry(set.iter().map(|&j| row[j]).collect()).or_default().push(r);
+                let (cell, size) = by_levels.entry(set.iter().map(|&j| row[j]).collect()).or_default();
+                *size += usize::from(sketch.weights[r]);
+                if sketch.weights[r] == 1 { cell.single |= 1 << r } else { cell.repeated.push(r) }
             }
-            for runs in by_levels.into_values() {
-                let size: usize = runs.iter().map(|&r| usize::from(sketch.weights[r])).sum();
+            for (mut cell, size) in by_levels.into_values() {
                 if !size.is_multiple_of(s * s) {
                     return None;
                 }
-                cells.push((runs, (size / (s * s)) as u32));
+                cell.share = (size / (s * s)) as u32;
+                cells.push(cell);
             }
         }
         Some(Self { weights: &sketch.weights, s, cells })
     }
 
+    fn candidate<'b>(&self, split: &'b [u8]) -> Candidate<'b> {
+        let mut masks = vec![0; self.s];
+        for (i, &n) in split.iter().enumerate() {
+            if n == 1 && self.weights[i / self.s] == 1 {
+                masks[i % self.s] |= 1 << (i / self.s);
+            }
+        }
+        Candidate { split, masks }
+    }
+
     /// Whether two columns may stand together: of w equal runs, x with the one level and y with
     /// the other, from x + y − w to the smaller of x and y have both.
-    fn allows(&self, a: &[u8], b: &[u8]) -> bool {
+    fn allows(&self, a: &Candidate<'_>, b: &Candidate<'_>) -> bool {
         let s = self.s;
-        self.cells.iter().all(|(runs, share)| {
+        self.cells.iter().all(|cell| {
             (0..s * s).all(|pair| {
-                let (mut least, mut most) = (0, 0);
-                for &r in runs {
-                    let (x, y) = (u32::from(a[r * s + pair / s]), u32::from(b[r * s + pair % s]));
+                let (i, j) = (pair / s, pair % s);
+                let sure = (a.masks[i] & b.masks[j] & cell.single).count_ones();
+                let (mut least, mut most) = (sure, sure);
+                for &r in &cell.repeated {
+                    let (x, y) = (u32::from(a.split[r * s + i]), u32::from(b.split[r * s + j]));
                     least += (x + y).saturating_sub(u32::from(self.weights[r]));
                     most += x.min(y);
                 }
-                (least..=most).contains(share)
+                (least..=most).contains(&cell.share)
             })
         })
     }
