@@ -111,7 +111,8 @@ pub enum Progress {
     Complete,
     /// An array with all the columns, found while closing; nothing has changed.
     Found(Array),
-    /// The budget is used up, or somebody wants the end; nothing has changed.
+    /// The budget is used up, somebody wants the end, or a class has more than two million columns
+    /// that extend it; nothing has changed.
     Stopped,
 }
 

@@ -18,7 +18,8 @@ pub enum Decision {
     Exists(Array),
     /// There is none.
     None(Record),
-    /// The budget is used up: a state to go on from.
+    /// The budget is used up (or the engine gave up, see [`Progress::Stopped`]): a state to go on
+    /// from.
     NotDecided(Census),
 }
 

@@ -104,6 +104,26 @@ fn closing_changes_no_decision() {
     assert!(seen[0] > 10 && seen[1] > 20, "{seen:?}");
 }
 
+/// Beside each stored record that closes classes, the array with one column less is found in the
+/// same way. Existence: Wang & Wu 1991 (24 runs), DeCock & Stufken 2000 (28 runs) [memory].
+#[test]
+#[ignore = "some seconds in release"]
+fn closing_finds_the_arrays_at_the_edge() {
+    for (runs, text, from) in [
+        (24, "6^1 2^14", 5),
+        (24, "6^1 4^1 2^11", 4),
+        (24, "4^1 3^1 2^13", 5),
+        (24, "3^1 2^16", 5),
+        (24, "12^1 2^12", 3),
+        (28, "7^1 2^12", 5),
+    ] {
+        let found = decide(&mix(text), runs, 2, Some(from), None, &mut Effort::unlimited()).unwrap();
+        let Decision::Exists(array) = found else { panic!("{runs} {text}: {found:?}") };
+        assert_eq!(array.levels(), mix(text).levels());
+        assert_eq!(certify(&array, &Demand::strength(2)).unwrap().verdict, Verdict::Orthogonal, "{text}");
+    }
+}
+
 #[test]
 fn a_state_goes_on_and_is_of_its_question_only() {
     let asked = mix("5^1 2^9");
