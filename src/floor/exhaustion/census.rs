@@ -111,7 +111,8 @@ pub enum Progress {
     Complete,
     /// An array with all the columns, found while closing; nothing has changed.
     Found(Array),
-    /// The budget is used up, or somebody wants the end; nothing has changed.
+    /// The budget is used up, somebody wants the end, or a class has more than two million columns
+    /// that extend it; nothing has changed.
     Stopped,
 }
 
@@ -148,10 +149,10 @@ impl Census {
         })
     }
 
-    /// The same, but from `columns` columns on an array of strength 2 without repeated runs is not
-    /// extended column by column when all columns that are missing have equal levels: it is asked
-    /// by cliques whether it can be completed, and closed when it cannot. The stages that follow
-    /// then hold only the extensions of what was left open: fit to decide existence, not to count.
+    /// The same, but from `columns` columns on, when two or more columns are missing and all of
+    /// them have equal levels, it is asked of every array by cliques whether it can be completed.
+    /// When it cannot, it is closed: not extended column by column. The stages that follow hold
+    /// only the extensions of what was left open: fit to decide existence, not to count.
     #[must_use]
     pub fn closing(self, columns: u32) -> Self {
         Self { close_from: Some(columns), ..self }
@@ -170,7 +171,7 @@ impl Census {
         let &levels = missing.first()?;
         let alike = missing.iter().all(|&s| s == levels);
         let from = self.close_from? as usize;
-        (self.strength == 2 && alike && missing.len() > 1 && stage >= from).then_some((missing.len(), levels))
+        (self.strength >= 2 && alike && missing.len() > 1 && stage >= from).then_some((missing.len(), levels))
     }
 
     /// Whether stage `stage` (from 1) has more closed classes than it can have.
@@ -283,18 +284,17 @@ impl Census {
         let mut all = Extended::default();
         for portion in self.sketches().chunks(PORTION) {
             let work = |sketch: &Sketch| {
-                purse.pay(|spend| match closable.filter(|_| sketch.weights.iter().all(|&w| w == 1)) {
-                    Some((missing, levels)) => match completion(sketch, levels, missing, spend) {
-                        Completion::To(whole) => {
-                            Some(Extended { found: Some(whole.array()), ..Extended::default() })
+                purse.pay(|spend| {
+                    if let Some((missing, levels)) = closable {
+                        match completion(sketch, self.strength, levels, missing, spend) {
+                            Completion::To(whole) => return Some(Extended::found(whole.array())),
+                            Completion::Never => return Some(Extended { closed: 1, ..Extended::default() }),
+                            Completion::Stopped => return None,
+                            Completion::Open => {}
                         }
-                        Completion::Never => Some(Extended { closed: 1, ..Extended::default() }),
-                        Completion::Stopped => None,
-                    },
-                    None => {
-                        let forms = extensions(sketch, self.strength, next, spend)?;
-                        Some(Extended { forms, ..Extended::default() })
                     }
+                    let forms = extensions(sketch, self.strength, next, spend)?;
+                    Some(Extended { forms, ..Extended::default() })
                 })
             };
             // The whole portion is searched, so that the steps made do not depend on the threads.
@@ -318,6 +318,12 @@ struct Extended {
     forms: BTreeSet<Vec<u8>>,
     closed: u64,
     found: Option<Array>,
+}
+
+impl Extended {
+    fn found(array: Array) -> Self {
+        Self { found: Some(array), ..Self::default() }
+    }
 }
 
 /// The canonical forms of all extensions by one column.

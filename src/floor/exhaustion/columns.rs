@@ -76,7 +76,7 @@ fn cells(sketch: &Sketch, strength: u32, s: usize) -> Option<(Vec<Vec<u32>>, Vec
 }
 
 /// The subsets of `k` of `0..n`, ascending.
-fn subsets(n: usize, k: usize) -> Vec<Vec<usize>> {
+pub(super) fn subsets(n: usize, k: usize) -> Vec<Vec<usize>> {
     let mut all = vec![Vec::new()];
     for _ in 0..k {
         all = all

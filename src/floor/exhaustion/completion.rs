@@ -1,4 +1,6 @@
-use super::columns::{Columns, columns};
+use std::collections::BTreeMap;
+
+use super::columns::{Columns, columns, subsets};
 use super::sketch::Sketch;
 
 /// What an array can become.
@@ -8,15 +10,21 @@ pub(super) enum Completion {
     To(Sketch),
     /// It cannot.
     Never,
+    /// Cliques do not decide it.
+    Open,
     /// The search was stopped.
     Stopped,
 }
 
-/// Whether an array of strength 2 without repeated runs can be extended by `more` columns of
-/// `levels` levels each: by cliques among the columns that extend it by one.
+/// Whether an array can be extended by `more` columns of `levels` levels each: by cliques among
+/// the columns that extend it by one, two of them joined when they may stand together. When runs
+/// repeat, a column is only known up to the order of equal runs, and from strength 3 on three new
+/// columns may not fit although any two do; then a clique says nothing, but no clique still means
+/// that there is no completion.
 ///
 /// # Parameters
-/// `sketch`: of strength 2, every run once; `more`: at least 1; `spend`: asked for every node.
+/// `sketch`: of the strength, which is 2 or more; `more`: at least 1; `spend`: asked for every
+/// row of comparisons and every node, with its cost.
 ///
 /// # Cost
 /// Exponential at worst in the number of columns that extend the array.
@@ -26,57 +34,126 @@ pub(super) enum Completion {
 /// algorithm for finding a maximum clique'.
 pub(super) fn completion(
     sketch: &Sketch,
+    strength: u32,
     levels: u16,
     more: usize,
     spend: &mut dyn FnMut(u64) -> bool,
 ) -> Completion {
-    let Columns::All(all) = columns(sketch, 2, levels, false, spend) else { return Completion::Stopped };
-    if all.len() < more {
+    let s = usize::from(levels);
+    let Columns::All(all) = columns(sketch, strength, levels, false, spend) else {
+        return Completion::Stopped;
+    };
+    if all.is_empty() {
         return Completion::Never;
     }
-    let s = usize::from(levels);
-    let masks: Vec<Vec<u128>> = all.iter().map(|split| masks(split, s)).collect();
-    let share = (sketch.runs() / (s * s)) as u32;
-    let whole = sketch.runs().is_multiple_of(s * s);
-    let meet =
-        |a: &[u128], b: &[u128]| whole && a.iter().all(|x| b.iter().all(|y| (x & y).count_ones() == share));
-    let words = all.len().div_ceil(64);
-    let mut next = vec![vec![0u64; words]; all.len()];
+    let Some(meeting) = Meeting::new(sketch, strength, s) else { return Completion::Never };
+    let candidates: Vec<Candidate<'_>> = all.iter().map(|split| meeting.candidate(split)).collect();
+    if candidates.iter().any(|one| meeting.allows(one, one)) {
+        // One vertex would stand for several columns.
+        return Completion::Open;
+    }
+    let mut next = vec![vec![0u64; all.len().div_ceil(64)]; all.len()];
     for i in 0..all.len() {
         if !spend(i as u64) {
             return Completion::Stopped;
         }
-        for j in 0..i {
-            if meet(&masks[i], &masks[j]) {
-                next[i][j / 64] |= 1 << (j % 64);
-                next[j][i / 64] |= 1 << (i % 64);
-            }
+        for j in (0..i).filter(|&j| meeting.allows(&candidates[i], &candidates[j])) {
+            next[i][j / 64] |= 1 << (j % 64);
+            next[j][i / 64] |= 1 << (i % 64);
         }
     }
     let mut search = Cliques { next: &next, wanted: more, chosen: Vec::new(), spend };
     match search.expand(core(&next, more)) {
         None => Completion::Stopped,
         Some(false) => Completion::Never,
+        Some(true) if sketch.weights.iter().any(|&w| w > 1) => Completion::Open,
         Some(true) => {
-            // Every run occurs once, so its place names it; the columns are put on all at once.
             let rows = sketch.rows.iter().enumerate().map(|(r, row)| {
-                let level = |&c: &usize| masks[c].iter().position(|m| m >> r & 1 == 1).unwrap_or(0) as u8;
+                let level = |&c: &usize| (0..s).find(|l| all[c][r * s + l] == 1).unwrap_or(0) as u8;
                 (row.iter().copied().chain(search.chosen.iter().map(level)).collect(), 1)
             });
             let mut longer = sketch.levels.clone();
             longer.extend(std::iter::repeat_n(levels, more));
-            Completion::To(Sketch::from_rows(longer, rows))
+            let whole = Sketch::from_rows(longer, rows);
+            if whole.has_strength(strength) { Completion::To(whole) } else { Completion::Open }
         }
     }
 }
 
-/// For every level the set of its runs.
-fn masks(split: &[u8], s: usize) -> Vec<u128> {
-    let mut masks = vec![0; s];
-    for (i, _) in split.iter().enumerate().filter(|&(_, &n)| n > 0) {
-        masks[i % s] |= 1 << (i / s);
+/// A new column, and for every level the set of the runs that occur once and have it.
+struct Candidate<'a> {
+    split: &'a [u8],
+    masks: Vec<u128>,
+}
+
+/// How two new columns of s levels must meet: in every cell of t − 2 old columns each pair of
+/// levels has its share of the runs.
+struct Meeting<'a> {
+    weights: &'a [u16],
+    s: usize,
+    cells: Vec<Cell>,
+}
+
+#[derive(Default)]
+struct Cell {
+    /// The runs that occur once.
+    single: u128,
+    /// The others.
+    repeated: Vec<usize>,
+    /// How many runs of the cell each pair of levels has.
+    share: u32,
+}
+
+impl<'a> Meeting<'a> {
+    /// `None` when a share is not whole: no two new columns can stand together.
+    fn new(sketch: &'a Sketch, strength: u32, s: usize) -> Option<Self> {
+        let mut cells = Vec::new();
+        for set in subsets(sketch.levels.len(), strength as usize - 2) {
+            let mut by_levels: BTreeMap<Vec<u8>, (Cell, usize)> = BTreeMap::new();
+            for (r, row) in sketch.rows.iter().enumerate() {
+                let (cell, size) = by_levels.entry(set.iter().map(|&j| row[j]).collect()).or_default();
+                *size += usize::from(sketch.weights[r]);
+                if sketch.weights[r] == 1 { cell.single |= 1 << r } else { cell.repeated.push(r) }
+            }
+            for (mut cell, size) in by_levels.into_values() {
+                if !size.is_multiple_of(s * s) {
+                    return None;
+                }
+                cell.share = (size / (s * s)) as u32;
+                cells.push(cell);
+            }
+        }
+        Some(Self { weights: &sketch.weights, s, cells })
     }
-    masks
+
+    fn candidate<'b>(&self, split: &'b [u8]) -> Candidate<'b> {
+        let mut masks = vec![0; self.s];
+        for (i, &n) in split.iter().enumerate() {
+            if n == 1 && self.weights[i / self.s] == 1 {
+                masks[i % self.s] |= 1 << (i / self.s);
+            }
+        }
+        Candidate { split, masks }
+    }
+
+    /// Whether two columns may stand together: of w equal runs, x with the one level and y with
+    /// the other, from x + y − w to the smaller of x and y have both.
+    fn allows(&self, a: &Candidate<'_>, b: &Candidate<'_>) -> bool {
+        let s = self.s;
+        self.cells.iter().all(|cell| {
+            (0..s * s).all(|pair| {
+                let (i, j) = (pair / s, pair % s);
+                let sure = (a.masks[i] & b.masks[j] & cell.single).count_ones();
+                let (mut least, mut most) = (sure, sure);
+                for &r in &cell.repeated {
+                    let (x, y) = (u32::from(a.split[r * s + i]), u32::from(b.split[r * s + j]));
+                    least += (x + y).saturating_sub(u32::from(self.weights[r]));
+                    most += x.min(y);
+                }
+                (least..=most).contains(&cell.share)
+            })
+        })
+    }
 }
 
 /// The vertices that are left when those with fewer than `wanted` − 1 neighbours left are taken

@@ -18,7 +18,8 @@ pub enum Decision {
     Exists(Array),
     /// There is none.
     None(Record),
-    /// The budget is used up: a state to go on from.
+    /// The budget is used up (or the engine gave up, see [`Progress::Stopped`]): a state to go on
+    /// from.
     NotDecided(Census),
 }
 
@@ -27,7 +28,7 @@ pub enum Decision {
 /// # Parameters
 /// * `mix`, `runs`, `strength`: of the array, in the limits of [`Census::new`];
 /// * `close_from`: `None` to add all columns one by one; else from how many columns on arrays are
-///   closed by cliques, see [`Census::closing`] (strength 2 only; 4 or 5 is a good start when many
+///   closed by cliques, see [`Census::closing`] (4 or 5 is a good start when many
 ///   columns have equal levels, and the claim is the same);
 /// * `from`: the state of an earlier call for the same question, or `None`;
 /// * `effort`: as [`Census::advance`].

@@ -11,6 +11,10 @@
 //! | is a record true | [`Record::check_light`], [`Record::replay`] | form and stored arrays; the whole search again |
 //! | which records are stored | [`stored()`] | texts of `catalog/none-*.json` |
 //!
+//! A decision may close classes by cliques ([`Census::closing`]): far fewer stages and classes when
+//! many columns have equal levels, at the price that the numbers are no longer numbers of all
+//! classes. 24 runs with `6^1 2^15` take less than a second so, and do not end without.
+//!
 //! [`Record::check_light`] does not prove the claim: that no class was forgotten only shows when
 //! the search is made again, which [`Record::replay`] does without looking at the stored arrays.
 //! The claim reaches further than its mix: there is no array of a mix that has all of these

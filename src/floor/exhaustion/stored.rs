@@ -18,10 +18,12 @@ const STORED: &[(&str, &str)] = files![
     "none-0018-2-3x8.json",
     "none-0020-2-5x1-2x9.json",
     "none-0020-2-10x1-2x3.json",
+    "none-0024-2-4x1-3x1-2x14.json",
     "none-0024-2-6x1-2x15.json",
     "none-0024-2-6x1-4x1-2x12.json",
     "none-0024-3-3x1-2x5.json",
     "none-0027-3-3x5.json",
+    "none-0028-2-7x1-2x13.json",
     "none-0028-2-14x1-2x3.json",
     "none-0036-2-6x4.json",
     "none-0036-2-18x1-2x3.json",
@@ -50,10 +52,12 @@ mod tests {
         (18, 2, "3^8", None, false),
         (20, 2, "5^1 2^9", None, false),
         (20, 2, "10^1 2^3", None, false),
+        (24, 2, "4^1 3^1 2^14", Some(5), true),
         (24, 2, "6^1 2^15", Some(5), true),
         (24, 2, "6^1 4^1 2^12", Some(4), false),
         (24, 3, "3^1 2^5", None, false),
         (27, 3, "3^5", None, false),
+        (28, 2, "7^1 2^13", Some(5), true),
         (28, 2, "14^1 2^3", None, false),
         (36, 2, "6^4", None, false),
         (36, 2, "18^1 2^3", None, true),
@@ -83,14 +87,18 @@ mod tests {
     fn compare(slow: bool) {
         for (i, &(runs, strength, mix, close_from, _)) in MADE.iter().enumerate().filter(|(_, m)| m.4 == slow)
         {
+            let start = std::time::Instant::now();
             let record = made(runs, strength, mix, close_from);
             let (name, text) = (record.claim().unwrap().file_name(), record.to_json() + "\n");
+            eprintln!("{name}: {:?}", start.elapsed());
             if std::env::var_os("TRYSQUARE_REWRITE").is_some() {
                 let folder = std::path::Path::new(env!("CARGO_MANIFEST_DIR")).join("catalog");
                 std::fs::write(folder.join(&name), &text).unwrap();
             } else {
                 assert_eq!(stored()[i], (name.as_str(), text.as_str()));
-                Record::from_json(&text).unwrap().replay(&mut Effort::unlimited()).unwrap();
+                // The slow ones have just been made again: that is what a replay does.
+                let effort = &mut Effort::unlimited();
+                assert!(slow || Record::from_json(&text).unwrap().replay(effort).is_ok(), "{name}");
             }
         }
     }
@@ -101,8 +109,8 @@ mod tests {
     }
 
     #[test]
-    #[ignore = "seconds each"]
-    fn the_slow_ones_are_what_the_search_gives_and_replay() {
+    #[ignore = "up to half a minute each"]
+    fn the_slow_ones_are_what_the_search_gives() {
         compare(true);
     }
 
