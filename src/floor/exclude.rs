@@ -152,14 +152,14 @@ fn two_levels_beside(about: &Subject, odd: u16, most: u64) -> Option<(Vec<Step>,
 
 fn four_runs(about: &Subject) -> Option<(Vec<Step>, Reason)> {
     let levels = u16::try_from(about.runs / 4).ok()?;
-    let limit = block_limit(levels).filter(|_| about.strength == 2 && about.runs % 4 == 0)?;
+    let limit = block_limit(levels).filter(|_| about.strength == 2 && about.runs.is_multiple_of(4))?;
     let (steps, twos) = two_levels_beside(about, levels, limit + 1)?;
     (twos > limit).then_some((steps, Reason::FourRunsPerLevel { levels }))
 }
 
 fn eight_runs(about: &Subject) -> Option<(Vec<Step>, Reason)> {
     let levels = u16::try_from(about.runs / 8).ok()?;
-    if about.strength != 3 || about.runs % 8 != 0 || levels < 3 {
+    if about.strength != 3 || !about.runs.is_multiple_of(8) || levels < 3 {
         return None;
     }
     let (steps, twos) = two_levels_beside(about, levels, 7)?;

@@ -11,7 +11,8 @@ pub fn reach(shelf: &Shelf, rest: &[u16], levels: u16, runs: u64, strength: u32)
     let fits = |factors: u64| {
         let mut wanted = Bag::of_levels(rest);
         wanted.add(levels, u32::try_from(factors).ok()?);
-        let alone = wanted.factors() <= 1 && wanted.entries().iter().all(|e| runs % u64::from(e.0) == 0);
+        let alone =
+            wanted.factors() <= 1 && wanted.entries().iter().all(|e| runs.is_multiple_of(u64::from(e.0)));
         (alone || parents.iter().any(|p| packer.fit(&wanted, &p.bag).is_some())).then_some(())
     };
     fits(0)?;

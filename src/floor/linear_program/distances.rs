@@ -103,14 +103,14 @@ impl Search<'_> {
         let mut costs = vec![0.0; width + capped.len()];
         costs[0] = self.runs;
         let mut rows = Vec::with_capacity(len);
-        for i in 0..len {
+        for (i, &(least, most)) in limits.iter().enumerate() {
             let mut coefficients = p(i);
-            if limits[i].0 > 0.0 {
-                costs.iter_mut().zip(&coefficients).for_each(|(c, x)| *c -= limits[i].0 * x);
+            if least > 0.0 {
+                costs.iter_mut().zip(&coefficients).for_each(|(c, x)| *c -= least * x);
             }
             if let Ok(n) = capped.binary_search(&i) {
                 coefficients[width + n] = 1.0;
-                costs[width + n] += limits[i].1 - limits[i].0;
+                costs[width + n] += most - least;
             }
             rows.push(Row { coefficients, equal: false, right: 0.0 });
         }

@@ -10,8 +10,6 @@ mod distances;
 mod round;
 mod solver;
 mod space;
-#[cfg(test)]
-mod tests;
 
 use super::proof::{Bound, Subject, Weights, parity_applies, parity_bounds};
 use super::{Effort, Reason, confirmed};

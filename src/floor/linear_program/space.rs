@@ -101,9 +101,9 @@ mod tests {
         assert_eq!(space.len(), 90);
         let weights = [(3, 0.5), (17, -2.0), (89, 1.25)];
         let sums = space.transform(&weights);
-        for i in 0..space.len() {
+        for (i, sum) in sums.iter().enumerate() {
             let plain: f64 = weights.iter().map(|&(j, w)| w * space.q(j, i)).sum();
-            assert!((plain - sums[i]).abs() < 1e-12);
+            assert!((plain - sum).abs() < 1e-12);
             for j in 0..space.len() {
                 assert!((space.q(j, i) - space.q(i, j)).abs() < 1e-12 && space.q(i, j).abs() <= 1.0);
             }
