@@ -5,7 +5,7 @@ use super::seek::{self, Flags, Format};
 use super::{ExitCode, Failure, flags, input, words};
 use crate::array::Array;
 use crate::exchange::document::NearDocument;
-use crate::exchange::{ReadError, ReadOptions, read_any};
+use crate::exchange::{ReadError, ReadOptions, Received, Symbols, default_name, read_any};
 use crate::hunt::near::{NearOutcome, NearPlan, NearRequest, near};
 use crate::seek::{Outcome, Request, Verdict};
 use crate::verify::{Certificate, MOST_PARAMETERS, Nearness};
@@ -72,8 +72,28 @@ fn kept(file: &str, flags: &Flags, asked: &Request) -> Result<Array, Failure> {
     })?;
     if !flags.quiet() {
         output::remark(&read_as(&received));
+        if let Some(words) = numbered(&received, flags.symbols()) {
+            output::remark(&words);
+        }
     }
     Ok(received.array)
+}
+
+/// Which words of the file the numbers of the plan stand for, where they are not the same.
+fn numbered(received: &Received, symbols: Symbols) -> Option<String> {
+    let mut lines = Vec::new();
+    for (j, &s) in received.array.levels().iter().enumerate() {
+        let value = |symbol: u16| symbols.value(symbol, s).to_string();
+        let pairs: Vec<(String, &str)> =
+            (0..s).filter_map(|x| received.level_name(j, x).map(|word| (value(x), word))).collect();
+        if pairs.iter().any(|(number, word)| number != word) {
+            let name = received.names.as_ref().map_or_else(|| default_name(j), |names| names[j].clone());
+            let shown: Vec<String> =
+                pairs.iter().map(|(number, word)| format!("{word} is {number}")).collect();
+            lines.push(format!("  {name}: {}", shown.join(", ")));
+        }
+    }
+    (!lines.is_empty()).then(|| format!("in the plan\n{}", lines.join("\n")))
 }
 
 fn account(plan: &NearPlan, exact: Option<(&Certificate, Verdict)>) -> String {

@@ -57,6 +57,11 @@ fn runs_to_keep() {
     assert_eq!((&document["verdict"], &document["kept"]), (&"proved-smallest".into(), &1.into()));
     assert_eq!(document["certificate"]["strength"], 3, "all combinations once");
     assert_eq!(document["array"][0], serde_json::json!([1, 1, 2]));
+    bench.put("words.csv", "oven,mould,alloy\nold,x,grey\nnew,y,red\n");
+    assert_snapshot!(
+        "near_keep_words",
+        bench.show(&["seek", "2^2 3", "--budget", "7", "--keep", "words.csv"])
+    );
 }
 
 #[test]
