@@ -186,3 +186,42 @@ fn certificates_of_the_linear_program() {
     large.divisibility.sets = vec![vec![2, 2, 2]];
     assert_eq!(why(large.check().unwrap_err()), ExclusionError::TooLarge);
 }
+
+#[test]
+fn distances_from_a_run() {
+    use trysquare::floor::proof::Distances;
+    let request = subject(81, 3, "3^13");
+    let good = exclude(&request.mix, 3, 81, &mut Effort::unlimited()).unwrap();
+    let Reason::Distances { cases } = good.reason else { panic!("{}", good.reason.name()) };
+    let judge = |cases: &Distances| judged(&request, Reason::Distances { cases: cases.clone() });
+    assert_eq!(judge(&cases), Ok(()));
+    let Distances::Branch { at, most, low, high } = cases.clone() else { panic!("no branch") };
+    let branch = |at: Vec<u32>, most, low: &Distances, high: &Distances| Distances::Branch {
+        at,
+        most,
+        low: Box::new(low.clone()),
+        high: Box::new(high.clone()),
+    };
+    assert!(judge(&low).is_err() && judge(&high).is_err(), "one case is not all of them");
+    assert!(judge(&branch(at.clone(), most + 1, &low, &high)).is_err());
+    assert_eq!(judge(&branch(vec![99], most, &low, &high)), Err(ExclusionError::Weight(vec![99])));
+    assert_eq!(judge(&branch(at.clone(), u64::MAX, &low, &high)), Err(ExclusionError::Weight(at.clone())));
+    let leaf = |constant, at: &[u32], weight| Distances::Leaf {
+        weights: Weights { constant, terms: vec![Term { at: at.to_vec(), weight }] },
+    };
+    assert_eq!(judge(&leaf(1, &[1], 1)), Err(ExclusionError::Weak));
+    assert_eq!(judge(&leaf(-1, &[1], 1)), Err(ExclusionError::Negative(vec![0])));
+    assert_eq!(judge(&leaf(1, &[4], 1)), Err(ExclusionError::Weight(vec![4])), "above the strength");
+    assert_eq!(judge(&deep_chain(&at, &low)), Err(ExclusionError::TooLarge));
+}
+
+/// More branches than are checked, in a chain.
+fn deep_chain(at: &[u32], end: &trysquare::floor::proof::Distances) -> trysquare::floor::proof::Distances {
+    use trysquare::floor::proof::Distances;
+    (0..40).fold(end.clone(), |below, most| Distances::Branch {
+        at: at.to_vec(),
+        most,
+        low: Box::new(end.clone()),
+        high: Box::new(below),
+    })
+}
