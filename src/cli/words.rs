@@ -17,13 +17,35 @@ pub(super) fn time(time: std::time::Duration) -> String {
     if seconds < 0.1 { format!("{:.1} ms", seconds * 1000.0) } else { format!("{seconds:.1} s") }
 }
 
-/// What is known about the numbers of runs below an answer.
+/// What is known about the numbers of runs below an answer, a line each.
 pub(super) fn below(answer: &Answer) -> String {
     const SHOWN: usize = 8;
-    let each = |b: &Below| format!("{}: {}", b.runs, b.excluded.unwrap_or("not excluded"));
+    let each = |b: &Below| match b.excluded {
+        Some(name) => format!("{}: impossible, {} ({name})", b.runs, why(name)),
+        None => format!("{}: not excluded, none known here", b.runs),
+    };
     let skipped = answer.below.len().saturating_sub(SHOWN);
-    let shown: Vec<String> = answer.below.iter().skip(skipped).map(each).collect();
-    format!("{}{}", if skipped > 0 { "…, " } else { "" }, shown.join(", "))
+    let mut shown: Vec<String> = answer.below.iter().skip(skipped).map(each).collect();
+    if skipped > 0 {
+        shown.insert(0, format!("{skipped} smaller ones, see --json"));
+    }
+    shown.join("\n")
+}
+
+/// The name of a reason in words.
+fn why(name: &str) -> &'static str {
+    match name {
+        "indivisible" => "the level combinations cannot occur equally often",
+        "rao" => "too few degrees of freedom",
+        "bose-bush" | "bush" => "too many factors of one number of levels",
+        "linear-program" => "no distribution of distances is possible",
+        "parity" => "no distribution of distances is possible, counts being even",
+        "four-runs-per-level" => "too many two-level factors for four runs per level",
+        "eight-runs-per-level" => "too many two-level factors for eight runs per level",
+        "distances" => "no run can have the distances to the others that it must have",
+        "exhaustion" => "a complete search, on record, found none",
+        _ => "ruled out",
+    }
 }
 
 /// An aligned table under a line of titles, two blanks between columns; columns of numbers to the
