@@ -50,6 +50,7 @@ const LEGEND: &str = "<ul class=\"legend\">\n\
 <li><span class=\"chip e1\">≈</span> some once more than others: as even as the runs allow</li>\n\
 <li><span class=\"chip e2\">2</span> uneven: the number is the largest distance from the even share, in runs</li>\n\
 <li><span class=\"chip e3\">∅ 2</span> some combination is missing altogether</li>\n\
+<li>on the diagonal: the levels of one factor</li>\n\
 </ul>\n";
 
 fn summary(page: &Page<'_>, found: &Balance) -> String {
@@ -84,9 +85,9 @@ fn grid(found: &Balance, heads: &[String], across: Range<usize>, out: &mut Strin
     let caption = if across.len() < heads.len() {
         format!("Factor by factor, columns {} to {}", across.start + 1, across.end)
     } else {
-        "Factor by factor; the diagonal shows the levels of each".to_owned()
+        "Factor by factor".to_owned()
     };
-    scroller(&caption, out);
+    scroller("box fit", &caption, out);
     let _ = write!(out, "<table class=\"grid\">\n<caption>{caption}</caption>\n<thead><tr><td></td>");
     for head in &heads[across.clone()] {
         let _ = write!(out, "<th scope=\"col\"><bdi>{}</bdi></th>", escape(head));

@@ -71,7 +71,8 @@ pub struct Page<'a> {
     pub labels: Labels<'a>,
     /// The strength asked for.
     pub strength: usize,
-    /// What the judges found; without it the page says that the plan is near.
+    /// What the judges found; without it the page says that the plan is near, if it has `nearness`,
+    /// or not judged.
     pub certificate: Option<&'a Certificate>,
     /// Why the strength does not hold.
     pub witness: Option<&'a Witness>,

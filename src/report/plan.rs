@@ -47,7 +47,7 @@ fn blocks(cells: &[Cells], heads: &[String]) -> Vec<Range<usize>> {
     let mut blocks = Vec::new();
     let (mut start, mut used) = (0, 0);
     for (j, (cell, head)) in cells.iter().zip(heads).enumerate() {
-        let wide = cell.width().max(width(head)) * 15 + 18;
+        let wide = cell.width().max(width(head)) * 13 + 10;
         if used + wide > PAPER && j > start {
             blocks.push(start..j);
             (start, used) = (j, 0);
@@ -64,7 +64,7 @@ fn picture(page: &Page<'_>, cells: &[Cells], heads: &[String], block: Range<usiz
     } else {
         "Runs down, factors across".to_owned()
     };
-    scroller(&caption, out);
+    scroller("box fit", &caption, out);
     let _ = write!(
         out,
         "<table class=\"plan\">\n<caption>{caption}</caption>\n<thead><tr><th scope=\"col\">Run</th>"

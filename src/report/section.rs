@@ -58,7 +58,7 @@ pub(super) fn table(
     rows: impl IntoIterator<Item = Vec<String>>,
     out: &mut String,
 ) {
-    scroller(caption, out);
+    scroller("box", caption, out);
     out.push_str(&format!("<table class=\"list\">\n<caption>{caption}</caption>\n<thead><tr>"));
     head.iter().for_each(|cell| out.push_str(&format!("<th scope=\"col\">{cell}</th>")));
     out.push_str("</tr></thead>\n<tbody>\n");
@@ -75,7 +75,7 @@ pub(super) fn table(
 }
 
 /// Opens a box that scrolls, with plain text that says what is in it.
-pub(super) fn scroller(label: &str, out: &mut String) {
+pub(super) fn scroller(class: &str, label: &str, out: &mut String) {
     let label = label.replace("<bdi>", "").replace("</bdi>", "");
-    out.push_str(&format!("<div class=\"box\" role=\"region\" tabindex=\"0\" aria-label=\"{label}\">\n"));
+    out.push_str(&format!("<div class=\"{class}\" role=\"region\" tabindex=\"0\" aria-label=\"{label}\">\n"));
 }

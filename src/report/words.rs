@@ -80,10 +80,10 @@ pub(super) fn verdict(page: &Page<'_>) -> (&'static str, &'static str, String, S
             };
             ("✗", "no", format!("Not orthogonal at strength {t}"), format!("In this plan {holds}."))
         }
-        None => {
-            let sentence =
-                "No plan of these runs was proved orthogonal: this one is near, judged by the numbers below.";
-            ("≈", "near", "Near".into(), sentence.into())
+        None if page.nearness.is_some() => {
+            let few = format!("Near, not orthogonal at strength {t}");
+            ("≈", "near", few, "How near this plan comes is in the balance and the criteria below.".into())
         }
+        None => ("?", "near", "Not judged".into(), "Nobody said what strength this plan has.".into()),
     }
 }
