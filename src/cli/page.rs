@@ -5,7 +5,7 @@ use crate::array::Array;
 use crate::exchange::Received;
 use crate::floor::{self, Proof};
 use crate::hunt::near::NearPlan;
-use crate::report::{Floor, Labels, Page, Smaller, html};
+use crate::report::{Floor, Labels, Page, Section, Smaller, html};
 use crate::seek::Answer;
 use crate::verify::{Certificate, Judgement, Nearness, Verdict, nearness};
 
@@ -71,6 +71,13 @@ impl Report {
         page.certificate = Some(&answer.certificate);
         page.floor = Some(floor_part(&answer.floor, answer.array.runs()));
         page.recipe = Some(answer.recipe.to_string());
+        if !answer.below.is_empty() {
+            page.sections.push(Section {
+                title: "Fewer runs, one by one".into(),
+                paragraphs: words::below(answer).lines().map(str::to_owned).collect(),
+                table: None,
+            });
+        }
         page.commands = vec![seek::check_again(answer, flags)];
         self.write(&page)
     }

@@ -109,7 +109,8 @@ fn affordable(array: &Array) -> bool {
     let sum: u128 = largest.iter().sum();
     largest.sort_unstable_by(|a, b| b.cmp(a));
     let product: u128 = largest.iter().take(2).product();
-    let steps = (k * k / 2).saturating_mul(runs).saturating_add(sum * sum / 2);
+    let squares: u128 = largest.iter().map(|s| s * s).sum();
+    let steps = (k * (k + 1) / 2).saturating_mul(runs).saturating_add((sum * sum - squares) / 2 + sum);
     product <= MOST_COMBINATIONS && steps <= MOST_STEPS
 }
 
