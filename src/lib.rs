@@ -38,5 +38,6 @@ pub mod floor;
 pub mod hunt;
 pub mod mix;
 pub mod recipe;
+pub mod report;
 pub mod seek;
 pub mod verify;

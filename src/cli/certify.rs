@@ -2,6 +2,7 @@ use clap::Args;
 
 use super::flags::{self, ReadFlags};
 use super::output::{self, Output};
+use super::page::Report;
 use super::progress::Progress;
 use super::{ExitCode, Failure, words};
 use crate::exchange::Received;
@@ -29,6 +30,9 @@ pub(super) struct Flags {
     /// Write the certificate to this file
     #[arg(long, value_name = "FILE")]
     certificate: Option<String>,
+    /// Write a page with plan, balance and verdict to this file, HTML to read or print
+    #[arg(long, value_name = "FILE")]
+    report: Option<String>,
     /// The number of threads [default: all]; the verdict does not depend on it
     #[arg(long, value_name = "K", value_parser = clap::value_parser!(u16).range(1..=1024))]
     threads: Option<u16>,
@@ -40,7 +44,7 @@ pub(super) struct Flags {
 }
 
 pub(super) fn run(flags: &Flags) -> Result<ExitCode, Failure> {
-    output::distinct(&[&flags.file], &[flags.certificate.as_deref()])?;
+    output::distinct(&[&flags.file], &[flags.certificate.as_deref(), flags.report.as_deref()])?;
     if flags.certificate.as_deref() == Some("-") {
         return Err(Failure::usage("--certificate needs a file: stdout is for the verdict"));
     }
@@ -48,6 +52,7 @@ pub(super) fn run(flags: &Flags) -> Result<ExitCode, Failure> {
         return Err(Failure::usage("strength 0 makes no sense: every array has it; write 1 or more"));
     }
     let certificate = flags.certificate.as_deref().map(|name| Output::open(Some(name))).transpose()?;
+    let page = Report::open(flags.report.as_deref())?;
     let received = flags.reading.read(&flags.file, None)?;
     if !flags.quiet {
         output::remark(&read_as(&received));
@@ -62,6 +67,7 @@ pub(super) fn run(flags: &Flags) -> Result<ExitCode, Failure> {
         certificate.write(|out| out.write_all(judgement.certificate.to_json().as_bytes()))?;
         certificate.finish()?;
     }
+    page.judged(&received, &judgement, &flags.file, flags.certificate.as_deref(), &flags.reading)?;
     if flags.json {
         let document = CertifyDocument::new(&received, &judgement);
         Output::Stdout.write(|out| {

@@ -1,6 +1,6 @@
 use clap::{Args, ValueEnum};
 
-use super::{Failure, input};
+use super::{Failure, input, words};
 use crate::exchange::{HeaderOption, ReadError, ReadOptions, Received, RunColumn, Separator, read_any};
 use crate::mix::Mix;
 
@@ -71,6 +71,21 @@ impl ReadFlags {
             only: (!self.only.is_empty()).then(|| self.only.clone()),
             levels: self.levels.clone(),
         }
+    }
+
+    /// These flags as they would be typed behind a command.
+    pub(super) fn again(&self) -> String {
+        let mut text = String::new();
+        let mut add = |flag: &str, value: &str| text.push_str(&format!(" {flag} {}", words::quoted(value)));
+        if let Some(header) = self.header {
+            add("--header", if matches!(header, YesNo::Yes) { "yes" } else { "no" });
+        }
+        self.run_column.iter().for_each(|column| add("--run-column", column));
+        self.separator.iter().for_each(|separator| add("--separator", &separator.to_string()));
+        self.leave_out.iter().for_each(|column| add("--leave-out", column));
+        self.only.iter().for_each(|column| add("--only", column));
+        self.levels.iter().for_each(|levels| add("--levels", &levels.to_string()));
+        text
     }
 
     /// Reads the array in a file. Where nothing is said about levels, `expected` ones are tried

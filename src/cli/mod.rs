@@ -8,6 +8,7 @@
 //! | `flags` | flags that several commands share |
 //! | `input`, `output` | files and the standard streams; output files appear whole or not at all |
 //! | `near` | `seek --budget`: the nearest plan and its account |
+//! | `page` | `--report`: what the commands put on the page |
 //! | `progress` | the sign of life on a terminal |
 //! | `words` | tables and phrases that several commands print |
 //!
@@ -25,6 +26,7 @@ mod hunt;
 mod input;
 mod near;
 mod output;
+mod page;
 mod progress;
 mod recheck;
 mod seek;

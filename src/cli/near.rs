@@ -1,5 +1,6 @@
 use super::certify::read_as;
 use super::output::{self, Output};
+use super::page::Report;
 use super::progress::Progress;
 use super::seek::{self, Flags, Format};
 use super::{ExitCode, Failure, flags, input, words};
@@ -29,6 +30,7 @@ pub(super) fn run(flags: &Flags, asked: Request, budget: u64, format: Format) ->
         None => request,
     };
     let mut out = Output::open(flags.out())?;
+    let page = Report::open(flags.report())?;
     let outcome = flags::on_threads(flags.threads(), || {
         let _progress = Progress::start("looking for a plan", None, flags.quiet());
         Ok(near(&request)?)
@@ -36,7 +38,8 @@ pub(super) fn run(flags: &Flags, asked: Request, budget: u64, format: Format) ->
     let (plan, proved) = match &outcome {
         NearOutcome::Exact(answer) => {
             let found = Outcome::Found(answer.clone());
-            return seek::deliver(flags, format, &answer.request, &found, out, None);
+            let code = seek::deliver(flags, format, &answer.request, &found, out, None)?;
+            return page.found(answer, flags).map(|()| code);
         }
         NearOutcome::Orthogonal(plan, certificate, floor, verdict) => {
             (plan, Some((certificate.as_ref(), floor.as_ref(), *verdict)))
@@ -56,6 +59,7 @@ pub(super) fn run(flags: &Flags, asked: Request, budget: u64, format: Format) ->
     }
     seek::write_cells(flags, format, &plan.array, &mut out)?;
     out.finish()?;
+    page.near(plan, proved, flags)?;
     flags.say(&account(plan, proved.map(|(certificate, _, verdict)| (certificate, verdict))));
     Ok(ExitCode::Yes)
 }

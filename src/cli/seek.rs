@@ -1,6 +1,7 @@
 use clap::{Args, ValueEnum};
 
 use super::output::{self, Output};
+use super::page::Report;
 use super::progress::Progress;
 use super::{ExitCode, Failure, batch, flags, near, words};
 use crate::array::Array;
@@ -61,6 +62,9 @@ pub(super) struct Flags {
     /// Write the certificate to this file
     #[arg(long, value_name = "FILE")]
     certificate: Option<String>,
+    /// Write a page with plan, balance, floor and recipe to this file, HTML to read or print
+    #[arg(long, value_name = "FILE", conflicts_with = "batch")]
+    report: Option<String>,
     /// The number of threads [default: all]; the answer does not depend on it
     #[arg(long, value_name = "K", value_parser = clap::value_parser!(u16).range(1..=1024))]
     threads: Option<u16>,
@@ -85,7 +89,7 @@ pub(super) enum Format {
 pub(super) fn run(flags: &Flags) -> Result<ExitCode, Failure> {
     let format = format(flags)?;
     let inputs: Vec<&str> = flags.batch.as_deref().into_iter().chain(flags.keep.as_deref()).collect();
-    output::distinct(&inputs, &[flags.out.as_deref(), flags.certificate.as_deref()])?;
+    output::distinct(&inputs, &[flags.out.as_deref(), flags.certificate.as_deref(), flags.report()])?;
     if let Some(file) = &flags.batch {
         return batch::run(file, flags);
     }
@@ -98,11 +102,16 @@ pub(super) fn run(flags: &Flags) -> Result<ExitCode, Failure> {
     }
     let out = Output::open(flags.out.as_deref())?;
     let certificate = flags.certificate.as_deref().map(|name| Output::open(Some(name))).transpose()?;
+    let page = Report::open(flags.report())?;
     let outcome = flags::on_threads(flags.threads, || {
         let _progress = Progress::start("looking for an array", None, flags.quiet);
         Ok(seek(&request)?)
     })?;
-    deliver(flags, format, &request, &outcome, out, certificate)
+    let code = deliver(flags, format, &request, &outcome, out, certificate)?;
+    if let Outcome::Found(answer) = &outcome {
+        page.found(answer, flags)?;
+    }
+    Ok(code)
 }
 
 /// Writes what became of a request where it belongs, and says the rest.
@@ -200,6 +209,10 @@ impl Flags {
 
     pub(super) fn out(&self) -> Option<&str> {
         self.out.as_deref()
+    }
+
+    pub(super) fn report(&self) -> Option<&str> {
+        self.report.as_deref()
     }
 
     pub(super) fn keep(&self) -> Option<&str> {
@@ -300,7 +313,7 @@ fn account(answer: &Answer, flags: &Flags) -> String {
     words::labelled(&lines)
 }
 
-fn check_again(answer: &Answer, flags: &Flags) -> String {
+pub(super) fn check_again(answer: &Answer, flags: &Flags) -> String {
     let file = flags.out.as_deref().filter(|n| *n != "-").map_or("FILE".into(), words::quoted);
     match &flags.certificate {
         Some(certificate) => format!("trysquare recheck {} {file}", words::quoted(certificate)),

@@ -1,10 +1,10 @@
 use crate::floor::{Below, Bound, Exclusion, Proof};
 use crate::seek::Answer;
-use crate::verify::{Certificate, Engine, StrengthClaim};
+use crate::verify::Certificate;
 
-/// What is to be said beside every plan.
-pub(super) const CAUTION: &str = "the runs combine settings nobody may have run together: check each one against the\n\
-                       limits of the equipment, local rules and the judgement of whoever is licensed to run it";
+pub(super) use crate::report::CAUTION;
+use crate::report::words::meaning;
+pub(super) use crate::report::words::{engines, strength};
 
 /// `1 run`, `2 runs`.
 pub(super) fn count(n: u64, what: &str) -> String {
@@ -122,24 +122,6 @@ pub(super) fn floor(proof: &Proof) -> String {
     format!("{} ({}: {})", count(proof.runs, "run"), proof.name(), reason(proof))
 }
 
-/// The strength a certificate states.
-pub(super) fn strength(certificate: &Certificate) -> String {
-    match certificate.strength_claim {
-        StrengthClaim::Exact if certificate.strength == 0 => "0: not even single factors are balanced".into(),
-        StrengthClaim::Exact => format!("{}, no larger one holds", certificate.strength),
-        StrengthClaim::AtLeast => format!("{}, larger ones were not looked into", certificate.strength),
-    }
-}
-
-/// Who judged, and how.
-pub(super) fn engines(engines: &[Engine]) -> String {
-    let name = |e: &Engine| match e {
-        Engine::Counting => "counting (by the definition)",
-        Engine::Distance => "distance (by the dual distribution)",
-    };
-    engines.iter().map(name).collect::<Vec<_>>().join(" and ")
-}
-
 /// How often the level combinations of as many factors as the strength says occur: by the number
 /// of combinations.
 pub(super) fn index(certificate: &Certificate) -> String {
@@ -169,14 +151,6 @@ pub(super) fn words(certificate: &Certificate) -> String {
         0 | 1 => format!("B1 = {}", pattern.join(" ")),
         n => format!("B1 … B{n} = {}", pattern.join(" ")),
     };
-    let meaning = match pattern.iter().position(|b| b != "0").map(|i| i + 1) {
-        None if pattern.len() == certificate.levels.len() => "no effects are confused with one another",
-        None => "no words of these lengths",
-        Some(1) => "main effects are confused with the mean",
-        Some(2) => "main effects are confused with one another",
-        Some(3) => "main effects are confused with interactions of two factors, not with one another",
-        Some(4) => "interactions of two factors are confused with one another, main effects with neither",
-        Some(_) => "main effects and interactions of two factors are not confused with one another",
-    };
+    let meaning = meaning(pattern, certificate.levels.len());
     format!("{entries}\n{meaning}")
 }

@@ -11,4 +11,5 @@ mod commands;
 mod files;
 mod hunt;
 mod near;
+mod report;
 mod schema;
