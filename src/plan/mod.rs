@@ -1,0 +1,9 @@
+//! From an array to a plan: which factor on which column, and what is confused with what.
+//!
+//! | folder | what it does |
+//! | --- | --- |
+//! | `effects` | what a plan can tell apart and how well: estimable terms, aliasing, efficiencies, inflation |
+//!
+//! Behind the feature `plan`, on by default: it needs a crate for linear algebra.
+
+pub mod effects;
