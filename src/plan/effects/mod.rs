@@ -19,6 +19,8 @@ mod variance;
 use serde::{Deserialize, Serialize};
 use thiserror::Error;
 
+pub(crate) use contrasts::contrasts;
+
 pub use alias::{AliasMatrix, Confusion, Confusions, MOST_COMPARISON_STEPS, MOST_LISTED};
 pub use model::Term;
 pub use variance::{Inflation, MOST_GRID_STEPS, Model};

@@ -61,7 +61,7 @@ fn numpy_finds_the_same() {
     for case in cases() {
         let found = effects(&case.array, &case.scales).unwrap();
         let alias = found.alias.as_ref().unwrap();
-        let named = |name: &str| case.lines.iter().filter(move |l| l.0 == name).map(|l| &l.1);
+        let named = |name: &'static str| case.lines.iter().filter(move |l| l.0 == name).map(|l| &l.1);
         assert_eq!(named("alias").count(), alias.entries.len());
         for (ours, theirs) in alias.entries.iter().zip(named("alias")) {
             assert_eq!(ours.len(), theirs.len());
@@ -99,7 +99,7 @@ fn numpy_finds_the_same() {
 fn fractions_of_the_handbook() {
     type Row<'a> = (usize, &'a [&'a [usize]], usize, &'a [u32]);
     let rows: &[Row<'_>] = &[
-        (2, &[&[0, 1]], 3, &[1, 0]),
+        (2, &[&[0, 1]], 3, &[1]),
         (3, &[&[0, 1, 2]], 4, &[0, 1]),
         (3, &[&[0, 1], &[0, 2]], 3, &[2, 1, 0]),
         (3, &[&[0, 1], &[0, 2], &[1, 2]], 3, &[4, 3, 0, 0]),
