@@ -7,6 +7,8 @@ use super::progress::Progress;
 use super::{ExitCode, Failure, input, words};
 use crate::array::Array;
 use crate::exchange::document::{RecheckDocument, RecipeCheck};
+use crate::floor::Effort;
+use crate::floor::exhaustion::{Record, RecordError};
 use crate::mix::Mix;
 use crate::recipe::Recipe;
 use crate::verify::{Certificate, Field, Mismatch, RecheckReport, digest, recheck};
@@ -21,8 +23,12 @@ pub(super) struct Flags {
     #[arg(value_name = "CERTIFICATE")]
     certificate: String,
     /// The file with the array; - for stdin
-    #[arg(value_name = "FILE")]
-    file: String,
+    #[arg(value_name = "FILE", required_unless_present = "deep")]
+    file: Option<String>,
+    /// Make the search of a record again (catalog/none-*.json), which says that no array exists; it
+    /// stands in place of CERTIFICATE
+    #[arg(long, conflicts_with_all = ["file", "json"])]
+    deep: bool,
     /// Print one JSON object
     #[arg(long)]
     json: bool,
@@ -37,11 +43,12 @@ pub(super) struct Flags {
 }
 
 pub(super) fn run(flags: &Flags) -> Result<ExitCode, Failure> {
-    if flags.certificate == "-" && flags.file == "-" {
+    let Some(file) = flags.file.as_deref() else { return again(flags) };
+    if flags.certificate == "-" && file == "-" {
         return Err(Failure::usage("stdin holds one file: give a name to the certificate or to the array"));
     }
     let certificate = read_certificate(&flags.certificate)?;
-    let received = flags.reading.read(&flags.file, Mix::new(certificate.levels.clone()).ok())?;
+    let received = flags.reading.read(file, Mix::new(certificate.levels.clone()).ok())?;
     if !flags.quiet {
         output::remark(&read_as(&received));
     }
@@ -61,6 +68,37 @@ pub(super) fn run(flags: &Flags) -> Result<ExitCode, Failure> {
         output::data(&verdict(&report, &recipe))?;
     }
     Ok(if report.holds() { ExitCode::Yes } else { ExitCode::No })
+}
+
+/// Makes a recorded search again.
+fn again(flags: &Flags) -> Result<ExitCode, Failure> {
+    let name = input::title(&flags.certificate);
+    let fail = |e: RecordError| Failure::input(name, e);
+    let record = Record::from_json(&input::read_text(&flags.certificate)?).map_err(fail)?;
+    let claim = record.claim().map_err(fail)?;
+    let claim = format!(
+        "no array of {} is for {} at strength {}",
+        words::count(claim.runs.into(), "run"),
+        claim.mix,
+        claim.strength
+    );
+    output::listen();
+    let halt = output::interrupted;
+    let outcome = flags::on_threads(flags.threads, || {
+        let _progress = Progress::start("searching again", None, flags.quiet);
+        Ok(record.replay(&mut Effort::new(u64::MAX, &halt)))
+    })?;
+    match outcome {
+        Ok(()) => {
+            output::data(&format!("the record holds, its search was made again: {claim}\n"))?;
+            Ok(ExitCode::Yes)
+        }
+        Err(RecordError::Unfinished) => Err(Failure::stopped("interrupted before the search was made again")),
+        Err(e) => {
+            output::data(&format!("not confirmed: {e}\nit claims: {claim}\n"))?;
+            Ok(ExitCode::No)
+        }
+    }
 }
 
 fn read_certificate(name: &str) -> Result<Certificate, Failure> {

@@ -282,6 +282,7 @@ fn account(answer: &Answer, flags: &Flags) -> String {
         ("array", subject),
         ("verdict", verdict),
         ("floor", words::floor(&answer.floor)),
+        ("fewer runs", words::below(answer)),
         ("recipe", answer.recipe.to_string()),
         ("judged by", words::engines(&certificate.engines)),
         ("strength", words::strength(certificate)),
@@ -290,6 +291,7 @@ fn account(answer: &Answer, flags: &Flags) -> String {
         ("runs", repeated),
         ("sha256", certificate.sha256.clone()),
     ];
+    lines.retain(|(label, _)| *label != "fewer runs" || !answer.below.is_empty());
     if let Some(seed) = flags.seed {
         lines.push(("seed", format!("{seed} was not needed: nothing was left to chance")));
     }

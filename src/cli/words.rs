@@ -1,4 +1,5 @@
-use crate::floor::{Bound, Proof};
+use crate::floor::{Below, Bound, Exclusion, Proof};
+use crate::seek::Answer;
 use crate::verify::{Certificate, Engine, StrengthClaim};
 
 /// What is to be said beside every plan.
@@ -8,6 +9,43 @@ pub(super) const CAUTION: &str = "the runs combine settings nobody may have run 
 /// `1 run`, `2 runs`.
 pub(super) fn count(n: u64, what: &str) -> String {
     if n == 1 { format!("1 {what}") } else { format!("{n} {what}s") }
+}
+
+/// `0.3 ms`, `1.2 s`.
+pub(super) fn time(time: std::time::Duration) -> String {
+    let seconds = time.as_secs_f64();
+    if seconds < 0.1 { format!("{:.1} ms", seconds * 1000.0) } else { format!("{seconds:.1} s") }
+}
+
+/// What is known about the numbers of runs below an answer, a line each.
+pub(super) fn below(answer: &Answer) -> String {
+    const SHOWN: usize = 8;
+    let each = |b: &Below| match b.excluded {
+        Some(name) => format!("{}: impossible, {} ({name})", b.runs, why(name)),
+        None => format!("{}: not excluded, none known here", b.runs),
+    };
+    let skipped = answer.below.len().saturating_sub(SHOWN);
+    let mut shown: Vec<String> = answer.below.iter().skip(skipped).map(each).collect();
+    if skipped > 0 {
+        shown.insert(0, format!("{skipped} smaller ones, see --json"));
+    }
+    shown.join("\n")
+}
+
+/// The name of a reason in words.
+fn why(name: &str) -> &'static str {
+    match name {
+        "indivisible" => "the level combinations cannot occur equally often",
+        "rao" => "too few degrees of freedom",
+        "bose-bush" | "bush" => "too many factors of one number of levels",
+        "linear-program" => "no distribution of distances is possible",
+        "parity" => "no distribution of distances is possible, counts being even",
+        "four-runs-per-level" => "too many two-level factors for four runs per level",
+        "eight-runs-per-level" => "too many two-level factors for eight runs per level",
+        "distances" => "no run can have the distances to the others that it must have",
+        "exhaustion" => "a complete search, on record, found none",
+        _ => "ruled out",
+    }
 }
 
 /// An aligned table under a line of titles, two blanks between columns; columns of numbers to the
@@ -44,8 +82,9 @@ pub(super) fn labelled(lines: &[(&str, String)]) -> String {
 pub(super) fn reason(proof: &Proof) -> String {
     let divisor = proof.divisibility.divisor;
     let multiple = if divisor == 1 { String::new() } else { format!("; multiple of {divisor}") };
+    let excluded = excluded(proof);
     let rests = match proof.bound {
-        Bound::Divisibility => return format!("the number of runs is a multiple of {divisor}"),
+        Bound::Divisibility => return format!("the number of runs is a multiple of {divisor}{excluded}"),
         Bound::Rao { strength, aside: None, .. } => format!("degrees of freedom at strength {strength}"),
         Bound::Rao { strength, aside: Some(s), .. } => {
             format!("degrees of freedom at strength {strength}, one factor of {s} levels set aside")
@@ -56,13 +95,31 @@ pub(super) fn reason(proof: &Proof) -> String {
         Bound::Bush { levels, factors, .. } => {
             format!("the {} of {levels} levels at index 1", count(factors, "factor"))
         }
+        Bound::LinearProgram { ref weights, .. } => {
+            format!("a certificate of {}", count(weights.terms.len() as u64, "weight"))
+        }
     };
-    format!("{rests}: at least {}{multiple}", proof.bound.least())
+    format!("{rests}: at least {}{multiple}{excluded}", proof.bound.least())
+}
+
+/// `; not 12 (four-runs-per-level), not 24 (…)`: what the exclusions of a proof rule out.
+fn excluded(proof: &Proof) -> String {
+    const SHOWN: usize = 4;
+    let each = |e: &Exclusion| format!("not {} ({})", e.runs, e.reason.name());
+    match proof.exclusions.len() {
+        0 => String::new(),
+        n if n <= SHOWN => format!("; {}", proof.exclusions.iter().map(each).collect::<Vec<_>>().join(", ")),
+        n => format!(
+            "; not {} to {}, each ruled out by itself",
+            proof.exclusions[0].runs,
+            proof.exclusions[n - 1].runs
+        ),
+    }
 }
 
 /// The floor in one phrase: runs, name of the bound, what it rests on.
 pub(super) fn floor(proof: &Proof) -> String {
-    format!("{} ({}: {})", count(proof.runs, "run"), proof.bound.name(), reason(proof))
+    format!("{} ({}: {})", count(proof.runs, "run"), proof.name(), reason(proof))
 }
 
 /// The strength a certificate states.

@@ -6,22 +6,37 @@
 //! | [`rao`] | N − 1 leaves room for all degrees of freedom | everything else |
 //! | [`bose_bush`] | sharper than Rao for factors of one number of levels, s − 1 ∤ λ − 1 | 3^8, 4^10, … |
 //! | [`bush`] | index 1 allows few factors | s^k just above s + t − 1 |
+//! | [`linear_program`] | the distances between runs and their transform are not negative | many kinds of factors, strength 3 and up |
+//! | [`exclude`] | no array has exactly N runs | N = 2^t·odd, few runs per level, derived arrays |
+//!
+//! [`bounds`] and [`floor`](floor()) are the closed formulas and take no time; [`strengthen`] goes on from
+//! there where an answer stands above the floor.
 
+pub mod exhaustion;
 pub mod proof;
 
 mod divisibility;
 mod effort;
+mod exclude;
+mod linear_program;
+mod most;
 mod pure;
 mod rao;
+mod recorded;
+mod strengthen;
 
 use thiserror::Error;
 
 use crate::mix::Mix;
 pub use divisibility::divisibility;
 pub use effort::Effort;
-pub use proof::{Bound, Proof, ProofError};
+pub use exclude::exclude;
+pub use linear_program::{distances, linear_program, parity};
+pub use most::{Most, most};
+pub use proof::{Bound, Distances, Exclusion, Proof, ProofError, Reason, Step, Subject};
 pub use pure::{bose_bush, bush};
 pub use rao::rao;
+pub use strengthen::{Below, QUICK, Strengthened, raise, strengthen};
 
 /// Why no floor can be stated.
 #[derive(Clone, Copy, Debug, PartialEq, Eq, Error)]
@@ -40,7 +55,7 @@ pub enum FloorError {
     TooLarge,
 }
 
-/// All bounds for a mix, each rounded up to what divisibility allows, the best one first; of equal
+/// The bounds with closed formulas for a mix, each rounded up to what divisibility allows, the best one first; of equal
 /// ones Rao's first, then the ones for pure levels, then divisibility alone.
 ///
 /// # Errors
@@ -65,6 +80,11 @@ pub fn bounds(mix: &Mix, strength: u32) -> Result<Vec<Proof>, FloorError> {
         .collect::<Result<Vec<_>, _>>()?;
     proofs.sort_by_key(|p| std::cmp::Reverse(p.runs));
     Ok(proofs)
+}
+
+/// Whether a reason holds; recorded searches are not made again.
+fn confirmed(reason: &Reason, about: &Subject) -> bool {
+    reason.check(about, &recorded::light).is_ok()
 }
 
 /// The best bound of [`bounds`].

@@ -1,17 +1,19 @@
 //! From a request to the smallest array known for it, judged.
 
 mod fallback;
+mod reach;
 
 use serde::{Deserialize, Serialize};
 use thiserror::Error;
 
 use crate::array::Array;
 use crate::catalog::{Bag, Packer, Shelf, arrange};
-use crate::floor::{self, FloorError, Proof};
+use crate::floor::{self, Below, Effort, FloorError, Proof, QUICK, Strengthened};
 use crate::mix::Mix;
 use crate::recipe::{Recipe, RecipeError};
 use crate::verify::{self, Certificate, Demand, JudgeError};
 use fallback::fallback;
+pub use reach::reach;
 
 /// Arrays with more runs than this are not looked for unless the request says so.
 pub const DEFAULT_MAX_RUNS: u64 = 1_000_000;
@@ -71,6 +73,9 @@ pub struct Answer {
     pub verdict: Verdict,
     /// The proved lower bound on the number of runs.
     pub floor: Proof,
+    /// The numbers of runs below the answer that divisibility allows, ascending, and why each is
+    /// impossible, as far as that is known; of very many only the last ones.
+    pub below: Vec<Below>,
     /// The array; its columns stand in the order of the request.
     pub array: Array,
     /// How it is built.
@@ -149,6 +154,9 @@ pub fn seek(request: &Request) -> Result<Outcome, SeekError> {
 /// in steps of what divides them, and the first parent into which the request fits is built and
 /// judged.
 ///
+/// Where that is above the closed formulas, the linear program and the reasons against single
+/// numbers of runs raise the floor, within an effort that costs well under a tenth of a second.
+///
 /// # Errors
 /// As [`seek`].
 pub fn seek_on(shelf: &Shelf, request: &Request) -> Result<Outcome, SeekError> {
@@ -156,12 +164,20 @@ pub fn seek_on(shelf: &Shelf, request: &Request) -> Result<Outcome, SeekError> {
     if floor.runs > request.max_runs {
         return Ok(Outcome::ProvedImpossible { floor });
     }
-    let Some((runs, recipe)) = find(shelf, request, &floor) else {
-        return Ok(Outcome::LimitReached { floor, searched: request.max_runs });
+    let found = find(shelf, request, &floor);
+    let mut effort = Effort::new(QUICK, &|| false);
+    let Some((runs, recipe)) = found else {
+        let floor = floor::raise(floor, request.max_runs.saturating_add(1), &mut effort)?;
+        return Ok(if floor.runs > request.max_runs {
+            Outcome::ProvedImpossible { floor }
+        } else {
+            Outcome::LimitReached { floor, searched: request.max_runs }
+        });
     };
     if runs.saturating_mul(request.mix.factors() as u64) > MAX_CELLS {
         return Ok(Outcome::LimitReached { floor, searched: runs });
     }
+    let Strengthened { proof: floor, below } = floor::strengthen(floor, runs, &mut effort)?;
     let array = recipe.build()?;
     let judgement = verify::certify(&array, &Demand::strength(request.strength as usize))?;
     let right = judgement.verdict == verify::Verdict::Orthogonal
@@ -176,6 +192,7 @@ pub fn seek_on(shelf: &Shelf, request: &Request) -> Result<Outcome, SeekError> {
         request: request.clone(),
         verdict,
         floor,
+        below,
         array,
         recipe,
         certificate,

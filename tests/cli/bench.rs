@@ -83,7 +83,26 @@ pub(crate) fn stderr(output: &Output) -> &str {
     std::str::from_utf8(&output.stderr).unwrap()
 }
 
-/// Command line, exit code, stdout and stderr; the version left open.
+/// The text with every time such as `0.3 ms` replaced by dots, as many as it has characters.
+fn without_times(text: &str) -> String {
+    let lines = text.split_inclusive('\n').map(|line| {
+        if let Some((before, after)) = line.split_once("  took  ") {
+            return format!("{before}  took  {}", after.trim_start());
+        }
+        let Some(end) = line.find(" ms ").map(|n| n + 3).or_else(|| line.find(" s  ").map(|n| n + 2)) else {
+            return line.to_owned();
+        };
+        let unit = line[..end].rfind(' ').unwrap_or(0);
+        let start = line[..unit].rfind(' ').map_or(0, |n| n + 1);
+        let number = line[start..unit].parse::<f64>().is_ok();
+        // A longer time takes the place of blanks.
+        let rest = line[end..].trim_start();
+        if number { format!("{}[time]  {rest}", &line[..start]) } else { line.to_owned() }
+    });
+    lines.collect()
+}
+
+/// Command line, exit code, stdout and stderr; the version and times left open.
 pub(crate) fn shown(arguments: &[&str], output: &Output) -> String {
     let quoted: Vec<String> = arguments
         .iter()
@@ -95,5 +114,5 @@ pub(crate) fn shown(arguments: &[&str], output: &Output) -> String {
             text.push_str(&format!("--- {title}\n{stream}"));
         }
     }
-    text.replace(concat!("trysquare ", env!("CARGO_PKG_VERSION")), "trysquare [version]")
+    without_times(&text).replace(concat!("trysquare ", env!("CARGO_PKG_VERSION")), "trysquare [version]")
 }

@@ -39,7 +39,7 @@ fn seek() {
     assert_snapshot!("seek_text", bench.show(&["seek", "3", "2", "--format", "text", "--symbols", "one"]));
     assert_snapshot!("seek_gap", bench.show(&["seek", "6^2 2^2", "--seed", "7"]));
     assert_snapshot!("seek_impossible", bench.show(&["seek", "2^1 3^7", "--max-runs", "17"]));
-    assert_snapshot!("seek_limit", bench.show(&["seek", "6^4", "--max-runs", "40"]));
+    assert_snapshot!("seek_limit", bench.show(&["seek", "2^21 3^2", "--max-runs", "40"]));
     assert_snapshot!("seek_single_factor", bench.show(&["seek", "5"]));
 }
 
@@ -57,7 +57,7 @@ fn seek_json() {
     );
     assert_snapshot!(
         "seek_json_limit",
-        bench.show(&["seek", "6^4", "--json", "--max-runs", "40", "--quiet"])
+        bench.show(&["seek", "2^21 3^2", "--json", "--max-runs", "40", "--quiet"])
     );
 }
 
@@ -169,6 +169,14 @@ fn floor() {
     assert_snapshot!("floor_strength_3", bench.show(&["floor", "3^8", "--strength", "3"]));
     assert_snapshot!("floor_single_factor", bench.show(&["floor", "5"]));
     assert_snapshot!("floor_json", bench.show(&["floor", "3^8", "--json"]));
+    assert_snapshot!("floor_raised", bench.show(&["floor", "3 2^5"]));
+    assert_snapshot!("floor_most", bench.show(&["floor", "2^? 3^1", "--runs", "12"]));
+    assert_snapshot!("floor_most_open", bench.show(&["floor", "3^? 2", "--runs", "36"]));
+    assert_snapshot!("floor_most_json", bench.show(&["floor", "2^?", "6", "--runs", "12", "--json"]));
+    assert_snapshot!("floor_most_none", bench.show(&["floor", "2^? 3^2", "--runs", "12"]));
+    assert_snapshot!("floor_most_without_term", bench.show(&["floor", "2^3 3^1", "--runs", "12"]));
+    assert_snapshot!("floor_most_without_runs", bench.show(&["floor", "2^? 3^1"]));
+    assert_snapshot!("seek_raised", bench.show(&["seek", "3 2^5", "--format", "text"]));
     assert_snapshot!("floor_too_large", bench.show(&["floor", "65521^5", "--strength", "5"]));
 }
 
@@ -180,8 +188,11 @@ fn a_proof_is_written_and_checked() {
     assert_snapshot!("floor_check", bench.show(&["floor", "--check", "p.json"]));
     bench.put("q.json", bench.get("p.json").replace("\"runs\": 27", "\"runs\": 36"));
     assert_snapshot!("floor_check_false", bench.show(&["floor", "--check", "q.json"]));
-    bench.put("r.json", bench.get("p.json").replace("\"version\": 1", "\"version\": 9"));
+    bench.put("r.json", bench.get("p.json").replace("\"version\": 2", "\"version\": 9"));
     assert_snapshot!("floor_check_version", bench.show(&["floor", "--check", "r.json"]));
+    assert_eq!(code(&bench.run(&["floor", "6^4", "--proof", "t.json"])), 0);
+    assert_snapshot!("floor_check_recorded", bench.show(&["floor", "--check", "t.json"]));
+    assert_snapshot!("floor_check_deep", bench.show(&["floor", "--check", "t.json", "--deep"]));
     bench.put("s.json", &bench.get("p.json")[..40]);
     assert_snapshot!("floor_check_cut", bench.show(&["floor", "--check", "s.json"]));
 }

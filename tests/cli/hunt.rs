@@ -209,3 +209,17 @@ fn proved_impossible() {
     assert_snapshot!("impossible", bench.show(&["hunt", "2^5 3", "--runs", "12"]));
     assert_snapshot!("impossible_under", bench.show(&["hunt", "2^2 6", "--runs", "12", "--symmetry", "Z12"]));
 }
+
+/// The records of searches that found nothing are made again.
+#[test]
+fn recorded_searches() {
+    let record = include_str!("../../catalog/none-0012-2-3x1-2x5.json");
+    let bench = Bench::with("none.json", record);
+    assert_snapshot!("record", bench.show(&["recheck", "--deep", "none.json"]));
+    bench.put("other.json", record.replace("\"classes\": 2,", "\"classes\": 1,"));
+    let output = bench.run(&["recheck", "--deep", "other.json"]);
+    assert_ne!(code(&output), 0, "{}", stdout(&output));
+    bench.put("cut.json", &record[..record.len() / 2]);
+    assert_eq!(code(&bench.run(&["recheck", "--deep", "cut.json"])), 3);
+    assert_eq!(code(&bench.run(&["recheck", "none.json"])), 2);
+}

@@ -5,8 +5,8 @@ use std::path::Path;
 use schemars::{JsonSchema, schema_for};
 use serde_json::{Value, json};
 use trysquare::exchange::document::{
-    CatalogDocument, CertifyDocument, ExtendDocument, FloorDocument, HuntDocument, NearDocument,
-    RecheckDocument, SeekDocument,
+    CatalogDocument, CertifyDocument, ExtendDocument, FloorDocument, HuntDocument, MostDocument,
+    NearDocument, RecheckDocument, SeekDocument,
 };
 use trysquare::floor::Proof;
 use trysquare::verify::Certificate;
@@ -19,13 +19,14 @@ fn schema<T: JsonSchema>() -> Value {
     schema
 }
 
-fn schemas() -> [(&'static str, Value); 10] {
+fn schemas() -> [(&'static str, Value); 11] {
     [
         ("seek", schema::<SeekDocument<'_>>()),
         ("near", schema::<NearDocument<'_>>()),
         ("certify", schema::<CertifyDocument<'_>>()),
         ("recheck", schema::<RecheckDocument<'_>>()),
         ("floor", schema::<FloorDocument<'_>>()),
+        ("most", schema::<MostDocument<'_>>()),
         ("catalog", schema::<CatalogDocument<'_>>()),
         ("extend", schema::<ExtendDocument<'_>>()),
         ("hunt", schema::<HuntDocument<'_>>()),

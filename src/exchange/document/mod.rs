@@ -26,7 +26,7 @@ mod seek;
 pub use catalog::CatalogDocument;
 pub use certify::{CertifyDocument, NamedWitness};
 pub use extend::{ExtendDocument, ExtendVerdict, KindPart, KindStanding};
-pub use floor::{BoundDocument, FloorDocument};
+pub use floor::{BoundDocument, FloorDocument, MostDocument};
 pub use hunt::{BestPart, FindPart, HuntDocument, HuntVerdict};
 pub use near::{
     CorrelationDocument, CriteriaDocument, EfficiencyDocument, NearDocument, NearVerdict, NextDocument,
@@ -34,5 +34,5 @@ pub use near::{
 };
 pub use recheck::{RecheckDocument, RecipeCheck};
 pub use seek::{
-    ErrorDocument, FloorPart, FoundDocument, NothingDocument, NothingVerdict, Rows, SeekDocument,
+    BelowPart, ErrorDocument, FloorPart, FoundDocument, NothingDocument, NothingVerdict, Rows, SeekDocument,
 };

@@ -3,7 +3,7 @@ use serde::{Deserialize, Serialize};
 
 use crate::array::Array;
 use crate::exchange::Symbols;
-use crate::floor::Proof;
+use crate::floor::{Below, Proof};
 use crate::recipe::Recipe;
 use crate::seek::{Answer, Outcome, Request, Verdict};
 use crate::verify::Certificate;
@@ -45,6 +45,10 @@ pub struct FoundDocument<'a> {
     pub verdict: Verdict,
     /// The proved lower bound on the number of runs.
     pub floor: FloorPart<'a>,
+    /// The numbers of runs below the answer that divisibility allows, ascending; of very many only
+    /// the last ones.
+    #[serde(skip_serializing_if = "Vec::is_empty")]
+    pub below: Vec<BelowPart>,
     /// The number of levels of each factor, in the order of the request.
     pub levels: &'a [u16],
     /// One array of level symbols per run, in the order of the request.
@@ -100,7 +104,7 @@ pub struct ErrorDocument<'a> {
 pub struct FloorPart<'a> {
     /// No array has fewer runs.
     pub runs: u64,
-    /// The name of the bound.
+    /// The name of what it rests on: of a bound, or of the last reason against a number of runs.
     pub by: &'static str,
     /// The proof.
     pub proof: &'a Proof,
@@ -110,7 +114,25 @@ impl<'a> FloorPart<'a> {
     /// The part that states a proof.
     #[must_use]
     pub fn new(proof: &'a Proof) -> Self {
-        Self { runs: proof.runs, by: proof.bound.name(), proof }
+        Self { runs: proof.runs, by: proof.name(), proof }
+    }
+}
+
+/// A number of runs below an answer.
+#[derive(Clone, Debug, Serialize)]
+#[cfg_attr(feature = "schema", derive(schemars::JsonSchema))]
+pub struct BelowPart {
+    /// The number of runs.
+    pub runs: u64,
+    /// The name of what excludes it; null when nothing known here does.
+    pub excluded: Option<&'static str>,
+}
+
+impl BelowPart {
+    /// The part that states what is known.
+    #[must_use]
+    pub fn new(below: &Below) -> Self {
+        Self { runs: below.runs, excluded: below.excluded }
     }
 }
 
@@ -182,6 +204,7 @@ impl<'a> FoundDocument<'a> {
             runs: answer.array.runs(),
             verdict: answer.verdict,
             floor: FloorPart::new(&answer.floor),
+            below: answer.below.iter().map(BelowPart::new).collect(),
             levels: answer.array.levels(),
             array: Rows { array: &answer.array, symbols },
             recipe: &answer.recipe,
