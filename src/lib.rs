@@ -37,6 +37,8 @@ pub mod exchange;
 pub mod floor;
 pub mod hunt;
 pub mod mix;
+#[cfg(feature = "plan")]
+pub mod plan;
 pub mod recipe;
 pub mod report;
 pub mod seek;
