@@ -213,7 +213,7 @@ mod tests {
         found
     }
 
-    /// The squares of order 6 of zeros and ones with all sums 3: 297,200 (OEIS A058527 [memory]),
+    /// The squares of order 6 of zeros and ones with all sums 3: 297,200 (OEIS A058527 \[memory\]),
     /// half of them up to complement.
     #[test]
     fn squares_with_even_sums_are_counted() {

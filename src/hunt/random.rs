@@ -48,7 +48,7 @@ impl Random {
 mod tests {
     use super::*;
 
-    /// The first values of the published reference code for seed 1234567 [memory].
+    /// The first values of the published reference code for seed 1234567 \[memory\].
     #[test]
     fn the_sequence_is_splitmix64() {
         let mut random = Random::new(1_234_567);

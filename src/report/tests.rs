@@ -166,7 +166,7 @@ fn the_same_page_for_any_number_of_threads() {
     assert_eq!(on(1), on(3));
 }
 
-/// Relative luminance and contrast as the Web Content Accessibility Guidelines 2.1 define them [memory].
+/// Relative luminance and contrast as the Web Content Accessibility Guidelines 2.1 define them \[memory\].
 fn contrast(a: &str, b: &str) -> f64 {
     let luminance = |colour: &str| {
         let hex: String = match colour.len() {

@@ -255,7 +255,7 @@ mod tests {
     use std::collections::BTreeSet;
 
     /// Numbers of reduced squares, isotopy classes and main classes: McKay & Wanless 2005, 'On the
-    /// number of Latin squares', table 1 [memory].
+    /// number of Latin squares', table 1 \[memory\].
     #[test]
     fn squares_and_their_classes_are_as_many_as_published() {
         for (n, reduced, isotopy, main) in [(2, 1, 1, 1), (3, 1, 1, 1), (4, 4, 2, 2), (5, 56, 2, 2)] {

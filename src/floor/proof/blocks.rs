@@ -24,7 +24,7 @@ pub fn block_limit(p: u16) -> Option<u64> {
 /// second one with m agreements begins with m times e_1 and m times −e_1, the rest being e_2.
 /// Vectors that differ in sign count once. What is left is a search for cliques.
 ///
-/// Reference: the vectors as in DeCock & Stufken 2000 [memory].
+/// Reference: the vectors as in DeCock & Stufken 2000 \[memory\].
 #[must_use]
 pub fn blocks_allow(p: u16, k: u64) -> Option<bool> {
     block_limit(p)?;

@@ -23,7 +23,7 @@ pub const MAX_BRANCHES: usize = 32;
 /// least Σ l_i P(i) over P(i) > 0 plus Σ u_i P(i) over P(i) < 0. When that is above N g the case is
 /// impossible.
 ///
-/// Reference: Delsarte 1973 for the equations [memory]; the cases are branch and bound.
+/// Reference: Delsarte 1973 for the equations \[memory\]; the cases are branch and bound.
 #[derive(Clone, Debug, PartialEq, Eq, Serialize, Deserialize)]
 #[serde(tag = "case", rename_all = "kebab-case", deny_unknown_fields)]
 #[cfg_attr(feature = "schema", derive(schemars::JsonSchema))]

@@ -17,7 +17,7 @@
 /// in both cases it has at most two points, a contradiction.
 ///
 /// Reference: proved here; that OA(8, 2^k, 2) is unique up to the choice of points for k = 5, 6, 7
-/// is common knowledge [memory]; what is used of it is checked on all of them in the tests.
+/// is common knowledge \[memory\]; what is used of it is checked on all of them in the tests.
 #[must_use]
 pub fn eight_runs_allow(levels: u16, factors: u64) -> bool {
     levels.is_multiple_of(2) || factors < if levels == 3 { 5 } else { 7 }

@@ -25,7 +25,7 @@ pub fn parity_applies(runs: u64, strength: u32) -> bool {
 /// the squared J's sum up to Π(s_i − 1) times a mean of numbers ≥ 4^t. Over all sets that j counts
 /// this gives v_j 4^t.
 ///
-/// Reference: for two levels and t = 2 as in Deng & Tang 1999 and Cheng 1995 [memory]; the extension to even
+/// Reference: for two levels and t = 2 as in Deng & Tang 1999 and Cheng 1995 \[memory\]; the extension to even
 /// numbers of levels is proved here.
 #[must_use]
 pub fn parity_bounds(at: &[u32], counts: &[(u16, u64)], strength: u32) -> bool {

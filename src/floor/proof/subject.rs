@@ -63,7 +63,7 @@ pub enum Step {
         levels: u16,
     },
     /// Two-level factors at even strength: the runs with a 0 and their complements with a 1 are
-    /// 2N runs of one factor more at strength t + 1 (Seiden 1954; [memory]).
+    /// 2N runs of one factor more at strength t + 1 (Seiden 1954; \[memory\]).
     FoldOver,
 }
 

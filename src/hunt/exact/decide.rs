@@ -82,7 +82,7 @@ const FIRST_ROUND: u64 = 1 << 22;
 /// # Reference
 /// Column-by-column extension with isomorph rejection as in McKay 1998 and Schoen, Eendebak &
 /// Nguyen 2010, here with a prescribed group; colour bounds for cliques as in Tomita & Seki 2003
-/// and San Segundo et al. 2011 [memory].
+/// and San Segundo et al. 2011 \[memory\].
 ///
 /// ```
 /// use trysquare::construct::orbit_array;

@@ -178,7 +178,7 @@ mod tests {
     }
 
     /// The cyclic squares of order 3, 5, 7 have 3, 15, 133 transversals and those of even order
-    /// none (OEIS A006717 [memory]; Euler 1782).
+    /// none (OEIS A006717 \[memory\]; Euler 1782).
     #[test]
     fn transversals_of_cyclic_squares() {
         for (n, count) in [(3, 3), (4, 0), (5, 15), (6, 0), (7, 133)] {
@@ -189,7 +189,7 @@ mod tests {
     }
 
     /// The 148,600 two-level columns beside two crossed six-level ones (half of OEIS A058527
-    /// [memory]), and the three ways to split a cyclic square of order 5 into transversals.
+    /// \[memory\]), and the three ways to split a cyclic square of order 5 into transversals.
     #[test]
     fn columns_are_counted() {
         let mut effort = Effort::unlimited();

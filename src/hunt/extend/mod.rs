@@ -126,7 +126,7 @@ pub enum ExtendError {
 /// [`Effort::halted`] the result means nothing.
 ///
 /// # Reference
-/// Exact cover for orthogonal mates as in Parker's search by transversals (1959) [memory];
+/// Exact cover for orthogonal mates as in Parker's search by transversals (1959) \[memory\];
 /// extension by cliques is common practice, no source.
 ///
 /// ```

@@ -88,7 +88,7 @@ fn from_text(columns: &[&str]) -> Array {
 
 /// Four columns of 16 runs that lie in a saturated array; six of 20 runs that take five more and
 /// not thirteen; three of 20 runs that take none. Not every OA(20, 2^6) lies in a Hadamard matrix
-/// of order 20 (Sun, Li & Ye 2002 [memory]); the numbers five and none are ours.
+/// of order 20 (Sun, Li & Ye 2002 \[memory\]); the numbers five and none are ours.
 #[test]
 fn some_two_level_arrays_can_be_saturated_and_others_not() {
     let sixteen =

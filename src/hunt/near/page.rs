@@ -8,7 +8,7 @@ use super::{NearError, NearOutcome, NearPlan, NearRequest, near};
 const EFFORT: u64 = 1 << 27;
 
 /// Near-orthogonal arrays with mixed levels, as (runs, mix). That Wang & Wu 1992, Nguyen 1996 or Xu
-/// 2002 treat arrays of these sizes [memory].
+/// 2002 treat arrays of these sizes \[memory\].
 const MIXED: [(u64, &str); 13] = [
     (6, "3 2^3"),
     (10, "5 2^5"),
@@ -25,7 +25,7 @@ const MIXED: [(u64, &str); 13] = [
     (24, "2 3^11"),
 ];
 
-/// Supersaturated two-level plans, as (runs, factors, published mean s² [memory]): half of a
+/// Supersaturated two-level plans, as (runs, factors, published mean s² \[memory\]): half of a
 /// Hadamard matrix of twice the order, Lin 1993, which attains the bound of Nguyen 1996 and Tang & Wu
 /// 1997.
 const TWO_LEVELS: [(u64, usize, &str); 4] =

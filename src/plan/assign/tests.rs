@@ -149,7 +149,7 @@ fn trying_all_assignments_finds_no_better_in_18_runs() {
 }
 
 /// In 8 runs three interactions that share a factor of four are clear of all main effects and of each
-/// other: Taguchi's linear graphs; Wu & Hamada, *Experiments*, chapter 5 [memory]. Two interactions
+/// other: Taguchi's linear graphs; Wu & Hamada, *Experiments*, chapter 5 \[memory\]. Two interactions
 /// without a common factor are one and the same in every choice of four columns of resolution IV.
 #[test]
 fn eight_runs() {
@@ -159,7 +159,7 @@ fn eight_runs() {
 }
 
 /// In 27 runs four three-level factors and one wanted interaction fit, with 14 degrees of freedom left:
-/// handbooks place the interaction on two columns [memory].
+/// handbooks place the interaction on two columns \[memory\].
 #[test]
 fn twenty_seven_runs() {
     let Outcome::Best(found) = run(&three_levels(3), &[3; 4], &[[0, 1]]) else { panic!() };

@@ -93,7 +93,7 @@ fn numpy_finds_the_same() {
 }
 
 /// Resolution and word-length patterns of 2^(k − p) fractions: NIST/SEMATECH e-Handbook of
-/// Statistical Methods, section 5.3.3.4.7 [memory], generators and patterns. What main effects and
+/// Statistical Methods, section 5.3.3.4.7 \[memory\], generators and patterns. What main effects and
 /// interactions are confused with follows: 3 A₃ words, 3 A₄ words.
 #[test]
 fn fractions_of_the_handbook() {
@@ -150,7 +150,7 @@ fn the_totals_are_the_judges_words_of_three() {
 }
 
 /// Every interaction of two factors of 12 runs is 1/3 in each other main effect: Plackett & Burman
-/// 1946; the value is in Hamada & Wu, *Journal of Quality Technology* 24 (1992), 130–137 [memory].
+/// 1946; the value is in Hamada & Wu, *Journal of Quality Technology* 24 (1992), 130–137 \[memory\].
 #[test]
 fn twelve_runs() {
     let case = cases().remove(2);

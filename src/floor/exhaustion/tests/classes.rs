@@ -14,7 +14,7 @@ fn numbers(order: &[u16], runs: u32, strength: u32) -> Vec<u64> {
     census.numbers()[2..].to_vec()
 }
 
-/// Schoen, Eendebak & Nguyen 2010, tables of pure-level arrays of strength 2 [memory].
+/// Schoen, Eendebak & Nguyen 2010, tables of pure-level arrays of strength 2 \[memory\].
 #[test]
 fn strength_two_has_the_published_numbers() {
     assert_eq!(numbers(&[2; 11], 12, 2), [2, 1, 2, 2, 1, 1, 1, 1, 1]);
@@ -24,7 +24,7 @@ fn strength_two_has_the_published_numbers() {
     assert_eq!(numbers(&[3; 3], 27, 2), [9]);
 }
 
-/// OA(54, 3^5, 3): 4, Schoen, Eendebak & Nguyen 2010 [memory]. The other numbers are not
+/// OA(54, 3^5, 3): 4, Schoen, Eendebak & Nguyen 2010 \[memory\]. The other numbers are not
 /// remembered from there; that 24 runs hold one class of 2^12 is the uniqueness of the Hadamard
 /// matrix of order 12 (Hall 1961) through foldover.
 #[test]
@@ -34,7 +34,7 @@ fn strength_three_has_the_published_numbers() {
     assert_eq!(numbers(&[3; 5], 27, 3), [1, 1, 0]);
 }
 
-/// Schoen, Eendebak & Nguyen 2010 [memory]; the last number is that of the Hadamard matrices of
+/// Schoen, Eendebak & Nguyen 2010 \[memory\]; the last number is that of the Hadamard matrices of
 /// order 20 (Hall 1965).
 #[test]
 #[ignore = "some seconds in release"]

@@ -105,7 +105,7 @@ fn closing_changes_no_decision() {
 }
 
 /// Beside each stored record that closes classes, the array with one column less is found in the
-/// same way. Existence: Wang & Wu 1991 (24 runs), DeCock & Stufken 2000 (28 runs) [memory].
+/// same way. Existence: Wang & Wu 1991 (24 runs), DeCock & Stufken 2000 (28 runs) \[memory\].
 #[test]
 #[ignore = "some seconds in release"]
 fn closing_finds_the_arrays_at_the_edge() {
