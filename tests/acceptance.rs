@@ -2,6 +2,7 @@
 
 use rayon::prelude::*;
 use trysquare::catalog::Shelf;
+use trysquare::floor::Effort;
 use trysquare::mix::Mix;
 use trysquare::seek::{Answer, Outcome, Request, Verdict, seek_on};
 use trysquare::verify::{Demand, certify};
@@ -79,7 +80,8 @@ fn answer(shelf: &Shelf, mix: &Mix, strength: u32) -> Result<Answer, String> {
     demand(judged.witness.is_none() && judged.certificate.strength >= strength as usize, "refused")?;
     demand(judged.certificate.sha256 == found.certificate.sha256, "the certificate is of another array")?;
     demand(found.certificate.recipe.is_some(), "no recipe in the certificate")?;
-    demand(found.floor.check().is_ok(), "the proof of the floor does not hold")?;
+    // Searches on record that the floor rests on are made again.
+    demand(found.floor.check_deep(&mut Effort::unlimited()).is_ok(), "the proof of the floor does not hold")?;
     demand(runs as u64 >= found.floor.runs, "fewer runs than the floor")?;
     demand(mix.full_factorial().is_none_or(|full| runs as u128 <= full), "more than the full factorial")?;
     let smallest = found.verdict == Verdict::ProvedSmallest;
