@@ -315,7 +315,7 @@ impl Flags {
         lines.push(("best", best_met(stopped)));
         lines.push(("tried", words::count(stopped.state.tasks_done(), "task")));
         if !stopped.state.exhausted.is_empty() {
-            let names: Vec<&str> = stopped.state.exhausted.iter().map(String::as_str).collect();
+            let names: Vec<&str> = stopped.state.exhausted.keys().map(String::as_str).collect();
             lines.push(("exhausted", format!("no array has this symmetry: {}", names.join(", "))));
         }
         let kept = match (&self.resume, outcome) {
@@ -382,7 +382,7 @@ fn impossible(request: &HuntRequest, reason: &Impossible) -> String {
         ),
         Impossible::Exhausted { symmetry } => format!(
             "proved impossible under {symmetry}: in no array of {} for {} at strength {} does this group act \
-             freely on the runs and add constants to the levels; others may exist: try --symmetry auto",
+             freely on the runs and add constants to the levels, modulo their number; others may exist: try --symmetry auto",
             words::count(request.runs.into(), "run"),
             request.mix,
             request.strength

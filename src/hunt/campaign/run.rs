@@ -141,7 +141,7 @@ pub fn run(state: State, observer: &dyn Observer) -> Result<Outcome, RunError> {
         request: state.request.clone(),
         observer,
         next: AtomicU64::new(state.first_open()),
-        decided: AtomicU64::new(state.found.as_ref().map_or(u64::MAX, |f| f.task)),
+        decided: AtomicU64::new(decisive(&work, &state).unwrap_or(u64::MAX)),
         state: Mutex::new(state),
     };
     rayon::scope(|scope| {
@@ -150,7 +150,7 @@ pub fn run(state: State, observer: &dyn Observer) -> Result<Outcome, RunError> {
         }
     });
     let state = crew.state.into_inner().unwrap_or_else(PoisonError::into_inner);
-    conclude(state, observer)
+    conclude(&work, state, observer)
 }
 
 /// What can be said without a search.
@@ -161,17 +161,31 @@ fn impossible(request: &HuntRequest) -> Option<Outcome> {
         .then_some(Outcome::ProvedImpossible(Impossible::Floor(floor)))
 }
 
-fn conclude(state: State, observer: &dyn Observer) -> Result<Outcome, RunError> {
+/// The task that found an array, if any, and the one that proved that there is none.
+fn verdicts(work: &WorkList, state: &State) -> (Option<u64>, Option<(u64, Symmetry)>) {
+    let asked = &state.request.symmetry;
+    let none = Symmetry::Group(Vec::new());
+    let proved = [none, asked.clone()].into_iter().filter(|s| work.settles(s));
+    let proved = proved.filter_map(|s| state.exhausted.get(&s.to_string()).map(|&task| (task, s)));
+    (state.found.as_ref().map(|f| f.task), proved.min_by_key(|p| p.0))
+}
+
+/// The earliest task that decides the hunt.
+fn decisive(work: &WorkList, state: &State) -> Option<u64> {
+    let (found, proved) = verdicts(work, state);
+    found.into_iter().chain(proved.map(|p| p.0)).min()
+}
+
+/// The earliest task decides, so that chance among the threads does not.
+fn conclude(work: &WorkList, state: State, observer: &dyn Observer) -> Result<Outcome, RunError> {
+    let (found, proved) = verdicts(work, &state);
+    if let Some((task, symmetry)) = proved
+        && found.is_none_or(|f| task < f)
+    {
+        return Ok(Outcome::ProvedImpossible(Impossible::Exhausted { symmetry }));
+    }
     if let Some(found) = &state.found {
         return Ok(Outcome::Found(Box::new(judged(&state.request, found)?)));
-    }
-    if state.exhausted.contains(&state.request.symmetry.to_string()) || state.exhausted.contains("none") {
-        let symmetry = if state.exhausted.contains("none") {
-            Symmetry::Group(Vec::new())
-        } else {
-            state.request.symmetry.clone()
-        };
-        return Ok(Outcome::ProvedImpossible(Impossible::Exhausted { symmetry }));
     }
     let best = state.best.as_ref().map(|b| judged(&state.request, b).map(Box::new)).transpose()?;
     let stopped = Box::new(Stopped { best, state });
@@ -261,14 +275,44 @@ impl Crew<'_> {
             }
             Work::Met(None) => {}
             Work::Exhausted => {
-                let symmetry = self.work.strategy(task).symmetry();
-                if symmetry == "none" || symmetry == self.request.symmetry.to_string() {
+                let first = state.exhausted.entry(self.work.strategy(task).symmetry()).or_insert(task);
+                *first = task.min(*first);
+                if let Some(task) = decisive(self.work, &state) {
                     self.decided.fetch_min(task, Ordering::Relaxed);
                 }
-                state.exhausted.insert(symmetry);
             }
         }
         state.finish(place);
         self.observer.changed(&state);
+    }
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+
+    #[test]
+    fn what_was_proved_is_known_when_the_hunt_goes_on() {
+        let request = HuntRequest::new("2^5 3".parse().unwrap(), 12);
+        let outcome = |state| run(state, &()).unwrap();
+        let proved = outcome(State::new(request.clone()).unwrap());
+        let Outcome::ProvedImpossible(Impossible::Exhausted { symmetry }) = &proved else { panic!() };
+        assert_eq!(*symmetry, Symmetry::Group(Vec::new()));
+        let mut known = State::new(HuntRequest { tasks: Some(0), ..request }).unwrap();
+        known.exhausted.insert("none".to_owned(), 3);
+        assert_eq!(outcome(known), proved);
+    }
+
+    /// Z2 × Z2 does not act on the columns of 4^5 by numbers modulo 4, but it does on vectors: that
+    /// the first is impossible must not end the hunt.
+    #[test]
+    fn levels_as_vectors_are_another_action() {
+        let request = HuntRequest {
+            symmetry: "Z2xZ2".parse().unwrap(),
+            tasks: Some(60),
+            ..HuntRequest::new("4^5".parse().unwrap(), 16)
+        };
+        let outcome = run(State::new(request).unwrap(), &()).unwrap();
+        assert!(matches!(outcome, Outcome::Found(_)), "{outcome:?}");
     }
 }

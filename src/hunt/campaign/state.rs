@@ -1,6 +1,6 @@
 //! What a hunt has done so far, as a value that can be written down and read again.
 
-use std::collections::BTreeSet;
+use std::collections::{BTreeMap, BTreeSet};
 
 use serde::{Deserialize, Serialize};
 
@@ -58,8 +58,8 @@ pub struct State {
     pub best: Option<Placed>,
     /// All columns, from the earliest task known to find them.
     pub found: Option<Placed>,
-    /// The symmetries under which no array exists.
-    pub exhausted: BTreeSet<String>,
+    /// The symmetries under which no array exists, with the earliest task that went through all.
+    pub exhausted: BTreeMap<String, u64>,
 }
 
 impl State {
@@ -77,7 +77,7 @@ impl State {
             beyond: BTreeSet::new(),
             best: None,
             found: None,
-            exhausted: BTreeSet::new(),
+            exhausted: BTreeMap::new(),
         })
     }
 

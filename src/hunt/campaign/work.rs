@@ -425,6 +425,17 @@ impl WorkList {
         &self.strategies[(task % m) as usize]
     }
 
+    /// Whether there is nothing left to look for when all arrays under this symmetry were gone
+    /// through: under no symmetry, or under the one asked for unless it is tried on levels as
+    /// vectors, too.
+    pub(super) fn settles(&self, symmetry: &Symmetry) -> bool {
+        let vectors = |s: &Strategy| matches!(s, Strategy::Solve { elementary: true, .. });
+        match symmetry {
+            Symmetry::Auto => false,
+            Symmetry::Group(group) => group.is_empty() || !self.strategies.iter().any(vectors),
+        }
+    }
+
     /// Does a task.
     pub(super) fn run(&self, task: u64, halt: &(dyn Fn() -> bool + Sync)) -> Work {
         let round = task / self.strategies.len() as u64;
